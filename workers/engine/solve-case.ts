@@ -1,0 +1,58 @@
+import type { CaseChoice, Model } from './case.ts';
+import { allPhases } from './case.ts';
+import { at, zero } from './complex.ts';
+import type { FaultPoint } from './faults.ts';
+import type { LateralPaths } from './laterals.ts';
+import { addUpPaths, phasesAt } from './laterals.ts';
+import type { OpenCircuit } from './open-circuit.ts';
+import { phasesOf, solveOpenCircuit } from './open-circuit.ts';
+import { drivingPoint } from './selected-inverse.ts';
+import type { SequenceNetworks } from './sequence-networks.ts';
+import { solveSequenceNetworks } from './sequence-networks.ts';
+import type { Topology } from './topology.ts';
+import { traceTopology } from './topology.ts';
+
+/** A case with everything that a fault anywhere in it needs. */
+export type SolvedCase = {
+  readonly model: Model;
+  readonly choice: CaseChoice;
+  readonly topology: Topology;
+  readonly networks: SequenceNetworks;
+  readonly paths: LateralPaths;
+  readonly openCircuit: OpenCircuit;
+};
+
+/** Solves one choice of what is in and out. */
+export function solveCase(model: Model, choice: CaseChoice): SolvedCase {
+  const topology = traceTopology(model, choice);
+  const networks = solveSequenceNetworks(model, choice, topology);
+  const openCircuit = solveOpenCircuit(model, choice, topology, networks);
+  return { model, choice, topology, networks, paths: addUpPaths(model, topology), openCircuit };
+}
+
+/** The bus of a node, or the one that its lateral hangs from; -1 where the node is absent or cut off. */
+export function busOfNode({ topology }: SolvedCase, node: number): number {
+  const spot = topology.laterals.spotOf[node]!;
+  return spot === -1 ? topology.busOf[node]! : topology.laterals.tap[spot]!;
+}
+
+/** Gives the Thevenin equivalent at a node, nothing where no source or machine feeds it. */
+export function findFaultPoint(solved: SolvedCase, node: number): FaultPoint | undefined {
+  const { topology, networks, paths, openCircuit } = solved;
+  const bus = busOfNode(solved, node);
+  if (bus === -1 || !networks.positive.hasPath[bus]) return undefined;
+  const spot = topology.laterals.spotOf[node]!;
+  return {
+    phases: spot === -1 ? allPhases : topology.laterals.phases[spot]!,
+    z1: drivingPoint(networks.positive.inverse, bus),
+    z2: drivingPoint(networks.negative.inverse, bus),
+    z0: networks.zero.hasPath[bus] ? drivingPoint(networks.zero.inverse, bus) : null,
+    self: spot === -1 ? zero : at(paths.self, spot),
+    mutual: spot === -1 ? zero : at(paths.mutual, spot),
+    voltage:
+      spot === -1
+        ? phasesOf(at(openCircuit.v1, bus), at(openCircuit.v2, bus), at(openCircuit.v0, bus))
+        : phasesAt(openCircuit.spotVoltage, spot),
+    balanced: openCircuit.balanced,
+  };
+}

@@ -1,0 +1,30 @@
+import type { Study } from '../../shared/schemas/study.ts';
+import type { SolvedCase } from './solve-case.ts';
+import type { StateName } from './states.ts';
+
+/** Lists what a reader of the numbers must know, each once. */
+export function listWarnings(study: Study, states: Record<StateName, SolvedCase>): string[] {
+  const warnings = new Set<string>();
+  for (const { id, max } of study.feeder.sources ?? []) {
+    if (!max.z0) {
+      warnings.add(
+        `Source ${id} gives no zero-sequence impedance: it is taken as open, and ground faults need data.`,
+      );
+    }
+  }
+  for (const { model, topology, networks, openCircuit } of Object.values(states)) {
+    for (const node of openCircuit.strandedInverters) {
+      const { id } = model.nodes[node]!;
+      warnings.add(`A one-phase inverter at ${id} has no way back for its current and is left out.`);
+    }
+    for (const [name, { inverse }] of Object.entries(networks)) {
+      for (const bus of inverse.factors.weakBuses) {
+        const { id } = model.nodes[topology.busOf.indexOf(bus)]!;
+        warnings.add(
+          `The ${name} sequence nearly resonates at ${id}: currents there are not to be relied on.`,
+        );
+      }
+    }
+  }
+  return [...warnings];
+}
