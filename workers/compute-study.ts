@@ -2,9 +2,11 @@ import type { Finding } from '../shared/schemas/findings.ts';
 import type { RuleSet } from '../shared/schemas/rule-sets.ts';
 import type { RunSummary } from '../shared/schemas/runs.ts';
 import { listNotFinite } from './engine/finite-result.ts';
+import { listProblems } from './engine/problems.ts';
 import { readStudy } from './engine/read-study.ts';
 import { runStudy, type StudyStep } from './engine/run-study.ts';
-import type { Problem } from './engine/shape.ts';
+import { writeResult } from './engine/write-result.ts';
+import { decodeText } from './study-text.ts';
 import { summariseResult } from './summarise-result.ts';
 
 interface ComputedStudy {
@@ -16,7 +18,7 @@ interface ComputedStudy {
   summary: RunSummary | null;
 }
 
-/** A study that cannot be run, or gives no numbers: one line for each thing that is wrong with it. */
+/** A study that cannot be run: one line for each thing that is wrong with it. */
 interface RefusedStudy {
   kind: 'refused';
   problems: string[];
@@ -24,29 +26,22 @@ interface RefusedStudy {
 
 export type StudyAnswer = ComputedStudy | RefusedStudy;
 
-const mostProblems = 200;
-
-function refuse(problems: readonly Problem[]): RefusedStudy {
-  const lines = problems
-    .slice(0, mostProblems)
-    .map(({ pointer, got, expected }) => `${pointer}: got ${got}, expected ${expected}`);
-  return { kind: 'refused', problems: lines };
-}
-
 /** From the bytes of a study file to the bytes of its result. */
 export function computeStudy(
   studyBytes: Uint8Array,
   ruleSet: RuleSet,
   onStep?: (step: StudyStep) => void,
 ): StudyAnswer {
-  const read = readStudy(new TextDecoder().decode(studyBytes));
-  if ('problems' in read) return refuse(read.problems);
+  const decoded = decodeText(studyBytes);
+  if ('problems' in decoded) return { kind: 'refused', problems: listProblems(decoded.problems) };
+  const read = readStudy(decoded.text);
+  if ('problems' in read) return { kind: 'refused', problems: listProblems(read.problems) };
   const result = runStudy(read.study, ruleSet, onStep);
   const notFinite = listNotFinite(result);
-  if (notFinite.length > 0) return refuse(notFinite);
+  if (notFinite.length > 0) return { kind: 'refused', problems: listProblems(notFinite) };
   return {
     kind: 'computed',
-    resultBytes: new TextEncoder().encode(`${JSON.stringify(result)}\n`),
+    resultBytes: Buffer.concat(Array.from(writeResult(result), (chunk) => Buffer.from(chunk))),
     findings: result.findings,
     warnings: result.warnings,
     summary: summariseResult(read.study, result),

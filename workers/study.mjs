@@ -33,6 +33,7 @@ function putInPlace(path, content) {
   renameSync(half, path);
 }
 
+/** Gives the address of a new bundle. */
 async function build() {
   const { build: bundleWith } = await import('esbuild');
   const { outputFiles, metafile } = await bundleWith({
@@ -46,11 +47,17 @@ async function build() {
     write: false,
     logLevel: 'error',
   });
-  mkdirSync(folder, { recursive: true });
-  putInPlace(bundle, outputFiles[0].contents);
+  const { contents } = outputFiles[0];
   const stamps = Object.fromEntries(Object.keys(metafile.inputs).map((path) => [path, stampOf(path)]));
-  putInPlace(inputsFile, JSON.stringify(stamps));
+  try {
+    mkdirSync(folder, { recursive: true });
+    putInPlace(bundle, contents);
+    putInPlace(inputsFile, JSON.stringify(stamps));
+    return pathToFileURL(bundle).href;
+  } catch {
+    // Where nothing can be kept, such as an installation that is only to be read, each start makes its own.
+    return `data:text/javascript;base64,${Buffer.from(contents).toString('base64')}`;
+  }
 }
 
-if (!isFresh()) await build();
-await import(pathToFileURL(bundle).href);
+await import(isFresh() ? pathToFileURL(bundle).href : await build());

@@ -28,6 +28,20 @@ export type DeviceDuty = {
   loading: number | null;
   availableA: number;
   availableLoading: number | null;
+} & Partial<DeviceAsymmetry>;
+
+/** What the direct current of the first cycles adds at a device that has a rating. X/R of 10,000 stands for any above. */
+export type DeviceAsymmetry = {
+  /** Of the fault that is largest with its direct current in: X/R of the Thevenin impedance, */
+  xr: number;
+  /** and by reducing resistances and reactances separately; this one gives the values below. */
+  xrSeparate: number;
+  /** Current half a cycle after the fault, direct current in, over symmetrical current. */
+  asymmetry: number;
+  /** Largest instantaneous current over all faults. */
+  peakA: number;
+  /** `availableLoading` with each fault counted as the rating demands at its X/R. */
+  correctedLoading: number | null;
 };
 
 export type DeviceResult = { before: DeviceDuty; after?: DeviceDuty };
@@ -52,10 +66,14 @@ export type Grounding = {
   cogPercent: number;
 };
 
+/** Of a line that names a construction, ohms per km: rows and columns in the line's order of phases, then as if transposed. */
+export type LineConstants = { zPerKm: Impedance[][]; z1: Impedance; z0: Impedance };
+
 export type StudyResult = {
   format: typeof resultFormat;
   nodes: Record<string, NodeResult>;
   devices: Record<string, DeviceResult>;
+  lines?: Record<string, LineConstants>;
   project?: ProjectResult;
   grounding?: { connected: Grounding | null; island: Grounding | null };
   findings: Finding[];

@@ -33,8 +33,10 @@ export type Line = {
   to: string;
   phases: Phases;
   km: number;
-  z1: Impedance;
-  z0: Impedance;
+  /** Both or neither: a line without them names its construction. */
+  z1?: Impedance;
+  z0?: Impedance;
+  construction?: string;
   /** The feeder of the model that the line belongs to. */
   circuit?: string;
   ampacityA?: number;
@@ -56,6 +58,9 @@ export type Transformer = {
   ratedKvTo?: number;
   neutralFrom?: Neutral;
   neutralTo?: Neutral;
+  /** Of a power station unit: the machine that this transformer steps up. Only method "iec60909" asks, as below. */
+  unitMachine?: string;
+  onLoadTapChanger?: boolean;
   circuit?: string;
   with?: string;
 };
@@ -82,6 +87,9 @@ export type Machine = {
   x2Pu?: number;
   x0Pu?: number;
   neutral?: Neutral;
+  /** Rated voltage where it is not the node's, and rated power factor; only method "iec60909" asks. */
+  ratedKv?: number;
+  ratedPowerFactor?: number;
   /** The most it may send out, where the agreement limits that. */
   exportKw?: number;
 };
@@ -107,6 +115,9 @@ export type Load = {
   kw: number;
   kvar: number;
   minimumKw?: number;
+  /** What part of its kVA is motors, and their locked-rotor reactance, 1/6 unless given; see `options.motorLoad`. */
+  motorFraction?: number;
+  motorLockedRotorPu?: number;
   with?: string;
 };
 
@@ -122,7 +133,9 @@ export type Device = {
   circuit?: string;
   phasePickupA?: number;
   groundPickupA?: number;
+  /** X/R that the rating was tested at; unless given, the lowest standard value for the kind. */
   testXr?: number;
+  /** "asymmetrical" where the rating counts the direct current in; else it is symmetrical. */
   ratingBasis?: string;
   /** Opens by itself and so bounds a line section; unless said, breakers and reclosers do. */
   sectionalizing?: boolean;
@@ -142,6 +155,37 @@ export type Section = {
 /** What is known of a feeder of the model; lines and devices name it in `circuit`. */
 export type Circuit = { id: string; lineType?: 'three-wire' | 'four-wire' };
 
+/** Resistance, geometric mean radius and diameter, in metric units or in US ones. */
+export type BareConductor =
+  | { ohmPerKm: number; gmrM: number; diameterM: number }
+  | { ohmPerMile: number; gmrFt: number; diameterIn: number };
+
+export type Conductor = { id: string } & BareConductor;
+
+/** A core with strands around it, all alike; the outside diameter is that over the strands. */
+export type ConcentricCable = {
+  id: string;
+  kind: 'concentric';
+  core: BareConductor;
+  strands: number;
+  strand: BareConductor;
+} & ({ outsideDiameterM: number } | { outsideDiameterIn: number });
+
+/** A core with a copper tape around it; the diameter is that over the tape, a mil is a thousandth of an inch. */
+export type TapeCable = { id: string; kind: 'tape'; core: BareConductor } & (
+  { shieldDiameterM: number; tapeThicknessM: number } | { shieldDiameterIn: number; tapeThicknessMil: number }
+);
+
+export type Cable = ConcentricCable | TapeCable;
+
+/** Where a conductor or a cable hangs or lies: x across, y up from the ground. N is earthed all along. */
+export type Place = { phase: 'A' | 'B' | 'C' | 'N'; conductor?: string; cable?: string } & (
+  { xM: number; yM: number } | { xFt: number; yFt: number }
+);
+
+/** What a line is built from; the resistivity of the earth is in ohm-metres. */
+export type Construction = { id: string; earthOhmM: number; places: Place[] };
+
 export type ElementLists = {
   sources?: Source[];
   lines?: Line[];
@@ -154,10 +198,26 @@ export type ElementLists = {
   devices?: Device[];
 };
 
-export type Feeder = ElementLists & { nodes: Node[]; sections?: Section[]; circuits?: Circuit[] };
+export type Feeder = ElementLists & {
+  nodes: Node[];
+  sections?: Section[];
+  circuits?: Circuit[];
+  conductors?: Conductor[];
+  cables?: Cable[];
+  constructions?: Construction[];
+};
 
 /** The project in question: its point of interconnection is a node of the feeder; its lists join in state `after`. */
 export type Project = ElementLists & { id: string; node: string; nodes?: Node[] };
+
+export type StudyOptions = {
+  /** "prefault", the default: every source and machine at one voltage before the fault. "iec60909": IEC 60909-0. */
+  method?: 'prefault' | 'iec60909';
+  /** How far low voltage may be off in service, which sets the voltage factors of "iec60909" there; 10 unless given. */
+  lowVoltageTolerancePercent?: 6 | 10;
+  /** Whether the duty of devices counts the first-cycle current of motors in the load. */
+  motorLoad?: boolean;
+};
 
 export type Study = {
   format: typeof studyFormat;
@@ -167,8 +227,7 @@ export type Study = {
   prefaultFactor: { max: number; min: number };
   /** Resistance of the line-to-ground fault of state `minimum`. */
   minimumFaultOhm?: number;
-  /** "prefault": every source and machine at one voltage before the fault. */
-  options?: { method?: 'prefault' };
+  options?: StudyOptions;
   feeder: Feeder;
   project?: Project;
 };

@@ -78,7 +78,7 @@ describe('the mail that a screening is done', () => {
 });
 
 describe('a result that cannot be kept', () => {
-  it('takes a result with a number that is none for a failed run: never stored, never tried again', async () => {
+  it('takes a project of vanishing size for a failed run that names it: never stored, never tried again', async () => {
     const poisoned = machineProject(1e-300);
     poisoned.transformers = [{ ...poisoned.transformers![0]!, kva: 1e-300 }];
     const bad = await insertFixtureApplication(test.db, world, { project: poisoned });
@@ -88,7 +88,7 @@ describe('a result that cannot be kept', () => {
 
     const run = await getRun(publicId);
     expect(run).toMatchObject({ state: 'failed', resultSha256: null });
-    expect(run.errorDetail).toMatch(/^\/nodes\/\w+\/after\/.*got NaN, expected a finite number/);
+    expect(run.errorDetail).toMatch(/^\/project\/transformers\/0\/kva: got 1e-300, expected a number/);
     expect(await listFindings(id)).toEqual([]);
     expect(await test.db('runs').where({ id }).first()).toMatchObject({ attempt: 1, next_attempt_at: null });
   });

@@ -5,6 +5,7 @@ import type { Complex } from './complex.ts';
  *
  * node       a place that the study file names; bus: all three-phase nodes that closed switches make one
  * core       the buses and the three-phase lines and transformers between them; it has three sequence networks
+ * mesh       what is left of the core when its trees are taken off, leaf by leaf: loops and what lies between them
  * lateral    one or two phases hanging off the core; its tap is the bus where it does
  * z1 z2 z0   impedance in the positive, negative and zero sequence; y: admittance
  * Thevenin   what a network is at one place: impedances zk and the open-circuit voltages v before the fault
@@ -40,20 +41,24 @@ export type CaseChoice = {
   project: boolean;
   /** Whether elements that name in `with` the generator they came with are there. */
   companions: boolean;
-  opened?: Opening;
+  /** Branches open at one end. */
+  opened?: readonly Opening[];
+  /** Ids of elements of any kind that are out besides. */
+  out?: ReadonlySet<string>;
+  /** By id: whether a switch is closed, where it differs from the model. */
+  switches?: ReadonlyMap<string, boolean>;
 };
 
 /** Whose an element is: the project's or the feeder's; a companion names in `with` the generator that it came with. */
-export type Belonging = { ofProject: boolean; companion: boolean };
+export type Belonging = { id: string; ofProject: boolean; companion: boolean };
 
-export type ModelNode = Belonging & { id: string; kv: number; phases: number };
+export type ModelNode = Belonging & { kv: number; phases: number };
 
 /** What the zero sequence of a three-phase branch looks like; a shunt stands at one end, the other end is open. */
 export type ZeroSequencePath =
   { kind: 'series'; z: Complex } | { kind: 'shunt'; end: 'from' | 'to'; z: Complex } | { kind: 'open' };
 
 export type Branch = Belonging & {
-  id: string;
   from: number;
   to: number;
   phases: number;
@@ -106,5 +111,11 @@ export function isMember(membership: Membership, ofProject: boolean): boolean {
 
 /** Whether a node, branch, switch or bank is there at all, before anything more is asked of it. */
 export function isPresent(choice: CaseChoice, element: Belonging): boolean {
-  return (choice.project || !element.ofProject) && (choice.companions || !element.companion);
+  if ((!choice.project && element.ofProject) || (!choice.companions && element.companion)) return false;
+  return !choice.out?.has(element.id);
+}
+
+/** Whether a switch joins its nodes. */
+export function isClosed(choice: CaseChoice, link: ModelSwitch): boolean {
+  return (choice.switches?.get(link.id) ?? link.closed) && isPresent(choice, link);
 }

@@ -1,156 +1,170 @@
-import type { Study } from '../../shared/schemas/study.ts';
-import type { CaseChoice, Model } from './case.ts';
 import { allPhases } from './case.ts';
+import { checkSupply } from './check-supply.ts';
+import type { AtNodes, BetweenNodes, JoinedStudy } from './check-references.ts';
+import type { ElementList } from './element-list.ts';
 import { DisjointSets } from './graph.ts';
+import { lettersOf } from './phase-letters.ts';
 import { phaseSet } from './per-unit.ts';
-import { prepareModel } from './prepare-model.ts';
-import type { Problem } from './shape.ts';
-import { eachElement } from './study-elements.ts';
-import { traceTopology } from './topology.ts';
+import { PhaseShifts } from './phase-shifts.ts';
+import type { Problems } from './problems.ts';
+import { describeValue } from './problems.ts';
+import type { ElementKind } from './study-elements.ts';
+import { clockHourOf } from './transformer-branch.ts';
 
 /* That what is joined can be joined. Everything is looked at with the project and all that came with generators in. */
 
-const everything: CaseChoice = {
-  sources: 'max',
-  prefaultFactor: 1,
-  machines: 'all',
-  inverters: 'all',
-  groundingBanks: 'all',
-  project: true,
-  companions: true,
-};
-
 /** Notes what is wrong with the network as a whole; shape and references must be right. */
-export function checkNetwork(study: Study, problems: Problem[]): void {
-  const model = prepareModel(study);
-  const nodeOf = (id: string) => model.nodes[model.nodeIndex.get(id)!]!;
-  checkVoltages(study, nodeOf, problems);
-  checkPhases(study, nodeOf, problems);
-  checkLateralLoops(study, model, problems);
-  checkIslands(study, model, problems);
+export function checkNetwork(study: JoinedStudy, problems: Problems): void {
+  const nodePhases = phasesOfAll(study.nodes.elements);
+  const linePhases = phasesOfAll(study.lines.list.elements);
+  const before = problems.length;
+  checkVoltages(study, problems);
+  checkPhases(study, nodePhases, linePhases, problems);
+  checkLateralLoops(study, nodePhases, linePhases, problems);
+  checkIslands(study, problems);
   // A walk over laterals needs them to be trees, and a phase shift needs what it joins to be three-phase.
-  if (problems.length === 0) checkWalk(study, model, problems);
+  if (problems.length > before) return;
+  checkShifts(study, nodePhases, problems);
+  checkSupply(study, nodePhases, linePhases, problems);
 }
 
-type NodeOf = (id: string) => Model['nodes'][number];
-
-function checkVoltages(study: Study, nodeOf: NodeOf, problems: Problem[]): void {
-  for (const kind of ['lines', 'switches'] as const) {
-    for (const { element, pointer } of eachElement(study, kind)) {
-      if ('closed' in element && !element.closed) continue;
-      const from = nodeOf(element.from).kv;
-      const to = nodeOf(element.to).kv;
-      if (Math.abs(from - to) <= 1e-9 * from) continue;
-      problems.push({
-        pointer,
-        got: `${from} kV at one end and ${to} kV at the other`,
-        expected: 'one voltage',
-      });
-    }
-  }
+function phasesOfAll(elements: readonly { phases: string }[]): Uint8Array {
+  const sets = new Uint8Array(elements.length);
+  for (let index = 0; index < sets.length; index++) sets[index] = phasesOf(elements[index]!.phases);
+  return sets;
 }
 
-function checkPhases(study: Study, nodeOf: NodeOf, problems: Problem[]): void {
-  const need = (phases: number, node: string, pointer: string) => {
-    const there = nodeOf(node).phases;
-    if ((phases & ~there) === 0) return;
-    const expected = `a node with phases ${lettersOf(phases)}`;
-    problems.push({ pointer, got: `${JSON.stringify(node)} with ${lettersOf(there)}`, expected });
+/** As `phaseSet`, quickly for what most of a feeder is. */
+function phasesOf(phases: string): number {
+  return phases === 'ABC' ? allPhases : phaseSet(phases);
+}
+
+function checkVoltages({ nodes, lines, switches }: JoinedStudy, problems: Problems): void {
+  const kv = new Float64Array(nodes.elements.length);
+  for (let node = 0; node < kv.length; node++) kv[node] = nodes.elements[node]!.kv;
+  const compare = ({ list, from, to }: BetweenNodes, index: number) => {
+    const kvFrom = kv[from[index]!]!;
+    const kvTo = kv[to[index]!]!;
+    if (Math.abs(kvFrom - kvTo) <= 1e-9 * kvFrom) return;
+    problems.add(() => ({
+      pointer: list.pointer(index),
+      got: `${kvFrom} kV at one end and ${kvTo} kV at the other`,
+      expected: 'one voltage',
+    }));
   };
-  for (const kind of ['sources', 'machines', 'groundingBanks'] as const) {
-    for (const { element, pointer } of eachElement(study, kind))
-      need(allPhases, element.node, `${pointer}/node`);
+  for (let index = 0; index < lines.from.length; index++) compare(lines, index);
+  for (let index = 0; index < switches.from.length; index++) {
+    if (switches.list.elements[index]!.closed) compare(switches, index);
   }
-  for (const kind of ['inverters', 'loads'] as const) {
-    for (const { element, pointer } of eachElement(study, kind)) {
-      need(phaseSet(element.phases), element.node, `${pointer}/node`);
+}
+
+function checkPhases(
+  study: JoinedStudy,
+  nodePhases: Uint8Array,
+  linePhases: Uint8Array,
+  problems: Problems,
+): void {
+  const note = (list: ElementList<ElementKind>, index: number, field: string, node: number, phases: number) =>
+    problems.add(() => ({
+      pointer: list.pointer(index, field),
+      got: `${describeValue(study.nodes.elements[node]!.id)} with ${lettersOf(nodePhases[node]!)}`,
+      expected: `a node with phases ${lettersOf(phases)}`,
+    }));
+  const needAtNodes = ({ list, node }: AtNodes, phasesAt: (index: number) => number) => {
+    for (let index = 0; index < node.length; index++) {
+      const phases = phasesAt(index);
+      if (phases & ~nodePhases[node[index]!]!) note(list, index, 'node', node[index]!, phases);
     }
+  };
+  const needAtEnds = ({ list, from, to }: BetweenNodes, phasesAt: (index: number) => number) => {
+    for (let index = 0; index < from.length; index++) {
+      const phases = phasesAt(index);
+      if (phases & ~nodePhases[from[index]!]!) note(list, index, 'from', from[index]!, phases);
+      if (phases & ~nodePhases[to[index]!]!) note(list, index, 'to', to[index]!, phases);
+    }
+  };
+  for (const kind of ['sources', 'machines', 'groundingBanks'] as const)
+    needAtNodes(study[kind], () => allPhases);
+  for (const kind of ['inverters', 'loads'] as const) {
+    const { elements } = study[kind].list;
+    needAtNodes(study[kind], (index) => phasesOf(elements[index]!.phases));
   }
-  for (const { element, pointer } of eachElement(study, 'transformers')) {
-    need(allPhases, element.from, `${pointer}/from`);
-    need(allPhases, element.to, `${pointer}/to`);
-  }
-  for (const { element, pointer } of eachElement(study, 'lines')) {
-    need(phaseSet(element.phases), element.from, `${pointer}/from`);
-    need(phaseSet(element.phases), element.to, `${pointer}/to`);
-  }
+  needAtEnds(study.transformers, () => allPhases);
+  needAtEnds(study.lines, (index) => linePhases[index]!);
 }
 
 /** The core counts as one place, so that a lateral between two of its buses closes a loop too. */
-function checkLateralLoops(study: Study, model: Model, problems: Problem[]): void {
-  const parts = new DisjointSets(model.nodes.length + 1);
-  const core = model.nodes.length;
-  model.nodes.forEach(({ phases }, index) => {
-    if (phases === allPhases) parts.join(index, core);
-  });
-  for (const kind of ['lines', 'switches'] as const) {
-    for (const { element, pointer } of eachElement(study, kind)) {
-      if ('closed' in element && !element.closed) continue;
-      const from = model.nodeIndex.get(element.from)!;
-      const to = model.nodeIndex.get(element.to)!;
-      const bothInCore = model.nodes[from]!.phases === allPhases && model.nodes[to]!.phases === allPhases;
-      if (bothInCore && ('closed' in element || phaseSet(element.phases) === allPhases)) continue;
-      if (parts.join(from, to)) continue;
-      problems.push({ pointer, got: 'a loop of laterals', expected: 'laterals without loops' });
-    }
+function checkLateralLoops(
+  { lines, switches }: JoinedStudy,
+  nodePhases: Uint8Array,
+  linePhases: Uint8Array,
+  problems: Problems,
+): void {
+  const core = nodePhases.length;
+  const parts = new DisjointSets(core + 1);
+  const placeOf = (node: number) => (nodePhases[node] === allPhases ? core : node);
+  const join = ({ list, from, to }: BetweenNodes, index: number, isThreePhase: boolean) => {
+    const u = placeOf(from[index]!);
+    const v = placeOf(to[index]!);
+    if ((u === core && v === core && isThreePhase) || parts.join(u, v)) return;
+    const got =
+      u === core && v === core
+        ? 'fewer phases than the two three-phase nodes it joins'
+        : 'a loop of laterals';
+    problems.add(() => ({ pointer: list.pointer(index), got, expected: 'laterals without loops' }));
+  };
+  for (let index = 0; index < lines.from.length; index++) join(lines, index, linePhases[index] === allPhases);
+  for (let index = 0; index < switches.from.length; index++) {
+    if (switches.list.elements[index]!.closed) join(switches, index, true);
   }
 }
 
-function checkIslands(study: Study, model: Model, problems: Problem[]): void {
-  const islands = new DisjointSets(model.nodes.length);
-  for (const { from, to } of model.branches) islands.join(from, to);
-  for (const { from, to, closed } of model.switches) if (closed) islands.join(from, to);
-  const fed = new Set<number>();
-  for (const { max } of model.sources) fed.add(islands.find(max.node));
-  for (const { node } of model.machines) fed.add(islands.find(node));
-  for (const { element, pointer } of eachElement(study, 'nodes')) {
-    const island = islands.find(model.nodeIndex.get(element.id)!);
-    if (fed.has(island)) continue;
-    fed.add(island);
-    problems.push({
-      pointer,
+function checkIslands(study: JoinedStudy, problems: Problems): void {
+  const { nodes, lines, transformers, switches, sources, machines } = study;
+  const count = nodes.elements.length;
+  const islands = new DisjointSets(count);
+  for (const { from, to } of [lines, transformers]) {
+    for (let index = 0; index < from.length; index++) islands.join(from[index]!, to[index]!);
+  }
+  switches.list.elements.forEach(({ closed }, index) => {
+    if (closed) islands.join(switches.from[index]!, switches.to[index]!);
+  });
+  const isFed = new Uint8Array(count);
+  for (const { node } of [sources, machines]) for (const at of node) isFed[islands.find(at)] = 1;
+  for (let node = 0; node < count; node++) {
+    const island = islands.find(node);
+    if (isFed[island]) continue;
+    isFed[island] = 1;
+    problems.add(() => ({
+      pointer: nodes.pointer(node),
       got: 'an island with neither source nor machine',
       expected: 'something that feeds it',
-    });
+    }));
   }
 }
 
-function checkWalk(study: Study, model: Model, problems: Problem[]): void {
-  const pointers = new Map<string, string>();
-  for (const kind of ['lines', 'transformers'] as const) {
-    for (const { element, pointer } of eachElement(study, kind)) pointers.set(element.id, pointer);
+/** Around every loop the lags must come to a whole number of turns. */
+function checkShifts(
+  { lines, transformers, switches }: JoinedStudy,
+  nodePhases: Uint8Array,
+  problems: Problems,
+): void {
+  if (transformers.from.length === 0) return;
+  const shifts = new PhaseShifts(nodePhases.length);
+  const { elements } = transformers.list;
+  for (let index = 0; index < switches.from.length; index++) {
+    if (switches.list.elements[index]!.closed) shifts.join(switches.from[index]!, switches.to[index]!, 0);
   }
-  const { busOf, clockHours, laterals, coreBranches } = traceTopology(model, everything);
-  for (const index of coreBranches) {
-    const branch = model.branches[index]!;
-    const lag = clockHours[busOf[branch.to]!]! - clockHours[busOf[branch.from]!]!;
-    if ((lag - branch.clockHour) % 12 === 0) continue;
-    const got = `a lag of ${branch.clockHour} × 30° where the rest of its loop makes ${((lag % 12) + 12) % 12} × 30°`;
-    problems.push({
-      pointer: pointers.get(branch.id)!,
-      got,
+  for (let index = 0; index < lines.from.length; index++)
+    shifts.join(lines.from[index]!, lines.to[index]!, 0);
+  for (let index = 0; index < transformers.from.length; index++) {
+    const clockHour = clockHourOf(elements[index]!.connection);
+    const there = shifts.join(transformers.from[index]!, transformers.to[index]!, clockHour);
+    if (there === clockHour) continue;
+    problems.add(() => ({
+      pointer: transformers.list.pointer(index),
+      got: `a lag of ${clockHour} × 30° where the rest of its loop makes ${there} × 30°`,
       expected: 'phase shifts that agree around the loop',
-    });
+    }));
   }
-  const spotPointers = new Map<number, string>();
-  for (const { element, pointer } of eachElement(study, 'nodes')) {
-    const spot = laterals.spotOf[model.nodeIndex.get(element.id)!]!;
-    if (spot !== -1 && !spotPointers.has(spot)) spotPointers.set(spot, pointer);
-  }
-  laterals.phases.forEach((phases, spot) => {
-    const parent = laterals.parent[spot]!;
-    const branch = model.branches[laterals.branch[spot]!];
-    const given = branch?.phases ?? (parent === -1 ? allPhases : laterals.phases[parent]!);
-    if ((phases & ~given) === 0) return;
-    const pointer = `${spotPointers.get(spot)!}/phases`;
-    problems.push({
-      pointer,
-      got: lettersOf(phases),
-      expected: `phases that its supply has: ${lettersOf(given)}`,
-    });
-  });
-}
-
-function lettersOf(phases: number): string {
-  return ['A', 'B', 'C'].filter((_, phase) => phases & (1 << phase)).join('') || 'none';
 }

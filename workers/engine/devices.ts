@@ -9,7 +9,7 @@ import { phasesAt } from './laterals.ts';
 import { negativeTurn, phasesOf, sequencesOf } from './open-circuit.ts';
 import { baseAmps } from './per-unit.ts';
 import type { SequenceNetwork } from './sequence-networks.ts';
-import { drivingPoint, transferOfPair } from './selected-inverse.ts';
+import { drivingPoint, transferOfPair } from './sequence-networks.ts';
 import type { SolvedCase } from './solve-case.ts';
 import { findFaultPoint } from './solve-case.ts';
 
@@ -105,19 +105,19 @@ function currentFromCoreBranch(
       return seriesCurrent(networks.zero, k, m, path.z, i0, subtract(at(v0, m), at(v0, k)));
     }
     if (path.kind === 'open' || path.end !== end) return zero;
-    return divide(subtract(multiply(drivingPoint(networks.zero.inverse, k), i0), at(v0, k)), path.z);
+    return divide(subtract(multiply(drivingPoint(networks.zero, k), i0), at(v0, k)), path.z);
   }
 }
 
 function seriesCurrent(
-  { inverse }: SequenceNetwork,
+  network: SequenceNetwork,
   k: number,
   m: number,
   z: Complex,
   faultCurrent: Complex,
   prefaultDrop: Complex,
 ): Complex {
-  const share = subtract(drivingPoint(inverse, k), transferOfPair(inverse, k, m));
+  const share = subtract(drivingPoint(network, k), transferOfPair(network, k, m));
   return divide(add(prefaultDrop, multiply(share, faultCurrent)), z);
 }
 

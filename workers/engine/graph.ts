@@ -6,7 +6,8 @@ export class DisjointSets {
   private readonly size: Int32Array;
 
   constructor(count: number) {
-    this.parent = Int32Array.from({ length: count }, (_, v) => v);
+    this.parent = new Int32Array(count);
+    for (let v = 0; v < count; v++) this.parent[v] = v;
     this.size = new Int32Array(count).fill(1);
   }
 

@@ -1,6 +1,6 @@
 import type { Model, PhaseTriple } from './case.ts';
-import type { Complex, ComplexArray } from './complex.ts';
-import { add, addAt, at, complexArray, multiply, sum } from './complex.ts';
+import type { ComplexArray } from './complex.ts';
+import { a, a2, addAt, at, complexArray } from './complex.ts';
 import type { Topology } from './topology.ts';
 
 /*
@@ -19,15 +19,16 @@ export function addUpPaths(model: Model, { laterals }: Topology): LateralPaths {
   const mutual = complexArray(count);
   for (let spot = 0; spot < count; spot++) {
     const parent = laterals.parent[spot]!;
-    const branch = model.branches[laterals.branch[spot]!];
     if (parent !== -1) {
-      addAt(self, spot, at(self, parent));
-      addAt(mutual, spot, at(mutual, parent));
+      for (const path of [self, mutual]) {
+        path.re[spot] = path.re[parent]!;
+        path.im[spot] = path.im[parent]!;
+      }
     }
-    if (branch) {
-      addAt(self, spot, branch.self);
-      addAt(mutual, spot, branch.mutual);
-    }
+    const branch = model.branches[laterals.branch[spot]!];
+    if (!branch) continue;
+    addAt(self, spot, branch.self);
+    addAt(mutual, spot, branch.mutual);
   }
   return { self, mutual };
 }
@@ -41,15 +42,23 @@ export function phasesAt(arrays: PhaseArrays, index: number): PhaseTriple {
 }
 
 export function addPhasesAt(arrays: PhaseArrays, index: number, values: PhaseTriple): void {
-  values.forEach((value, phase) => addAt(arrays[phase]!, index, value));
+  addAt(arrays[0], index, values[0]);
+  addAt(arrays[1], index, values[1]);
+  addAt(arrays[2], index, values[2]);
 }
 
 /** Turns what is sent out at each spot into what flows from it towards the tap, and gives the taps their share. */
-export function sweepCurrentsToTaps({ laterals }: Topology, flow: PhaseArrays, atBus: PhaseArrays): void {
+export function sweepCurrentsToTaps(
+  { laterals }: Topology,
+  flow: PhaseArrays,
+  giveToTap: (bus: number, currents: PhaseTriple) => void,
+): void {
   for (let spot = laterals.tap.length - 1; spot >= 0; spot--) {
+    const currents = phasesAt(flow, spot);
+    if (currents.every(({ re, im }) => re === 0 && im === 0)) continue;
     const parent = laterals.parent[spot]!;
-    if (parent === -1) addPhasesAt(atBus, laterals.tap[spot]!, phasesAt(flow, spot));
-    else addPhasesAt(flow, parent, phasesAt(flow, spot));
+    if (parent === -1) giveToTap(laterals.tap[spot]!, currents);
+    else addPhasesAt(flow, parent, currents);
   }
 }
 
@@ -58,24 +67,45 @@ export function sweepVoltagesFromTaps(
   model: Model,
   { laterals }: Topology,
   flow: PhaseArrays,
-  voltageAtBus: (bus: number) => PhaseTriple,
+  atBus: { v1: ComplexArray; v2: ComplexArray; v0: ComplexArray },
 ): PhaseArrays {
   const voltage = phaseArrays(laterals.tap.length);
   for (let spot = 0; spot < laterals.tap.length; spot++) {
     const parent = laterals.parent[spot]!;
-    addPhasesAt(voltage, spot, parent === -1 ? voltageAtBus(laterals.tap[spot]!) : phasesAt(voltage, parent));
     const branch = model.branches[laterals.branch[spot]!];
-    if (branch) addPhasesAt(voltage, spot, voltageRise(branch, phasesAt(flow, spot)));
+    for (let phase = 0; phase < 3; phase++) {
+      const { re, im } = voltage[phase]!;
+      if (parent === -1) takePhaseOfTap(spot, phase, laterals.tap[spot]!);
+      else {
+        re[spot] = re[parent]!;
+        im[spot] = im[parent]!;
+      }
+      if (branch) addRise(spot, phase, branch);
+    }
   }
   return voltage;
+
+  /** V0 + a^(−phase)·V1 + a^phase·V2, as `phasesOf` in open-circuit.ts. */
+  function takePhaseOfTap(spot: number, phase: number, bus: number): void {
+    const { v1, v2, v0 } = atBus;
+    const turn1 = phase === 0 ? unity : phase === 1 ? a2 : a;
+    const turn2 = phase === 0 ? unity : phase === 1 ? a : a2;
+    const [re1, im1, re2, im2] = [v1.re[bus]!, v1.im[bus]!, v2.re[bus]!, v2.im[bus]!];
+    voltage[phase]!.re[spot] =
+      v0.re[bus]! + turn1.re * re1 - turn1.im * im1 + turn2.re * re2 - turn2.im * im2;
+    voltage[phase]!.im[spot] =
+      v0.im[bus]! + turn1.re * im1 + turn1.im * re1 + turn2.re * im2 + turn2.im * re2;
+  }
+
+  function addRise(spot: number, phase: number, { self, mutual }: Model['branches'][number]): void {
+    for (let other = 0; other < 3; other++) {
+      const z = other === phase ? self : mutual;
+      const iRe = flow[other]!.re[spot]!;
+      const iIm = flow[other]!.im[spot]!;
+      voltage[phase]!.re[spot]! += z.re * iRe - z.im * iIm;
+      voltage[phase]!.im[spot]! += z.re * iIm + z.im * iRe;
+    }
+  }
 }
 
-function voltageRise(
-  { self, mutual }: { self: Complex; mutual: Complex },
-  currents: PhaseTriple,
-): PhaseTriple {
-  const all = multiply(mutual, sum(...currents));
-  const ownBeyondMutual = { re: self.re - mutual.re, im: self.im - mutual.im };
-  const rise = (current: Complex) => add(all, multiply(ownBeyondMutual, current));
-  return [rise(currents[0]), rise(currents[1]), rise(currents[2])];
-}
+const unity = { re: 1, im: 0 };

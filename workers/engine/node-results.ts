@@ -1,13 +1,21 @@
-import type { FaultCurrents, MinimumState, NodeState } from '../../shared/schemas/study-result.ts';
+import type {
+  FaultCurrents,
+  MinimumState,
+  NodeResult,
+  NodeState,
+} from '../../shared/schemas/study-result.ts';
 import type { Impedance } from '../../shared/schemas/study.ts';
 import { allPhases } from './case.ts';
 import type { Complex } from './complex.ts';
 import { magnitude } from './complex.ts';
+import { findBusFaults, findSpotFaults } from './fault-currents.ts';
 import type { FaultPoint } from './faults.ts';
 import { largestPhase, lineGroundFault, listBoltedFaults } from './faults.ts';
 import { baseAmps, baseOhms } from './per-unit.ts';
+import type { SequenceNetwork } from './sequence-networks.ts';
 import type { SolvedCase } from './solve-case.ts';
 import { findFaultPoint } from './solve-case.ts';
+import type { StateName } from './states.ts';
 
 /* What a study reports of a node, in ohms and amperes. */
 
@@ -24,25 +32,8 @@ export function reportNode(solved: SolvedCase, node: number): NodeState {
   return { z1: inOhms(point?.z1), z2: inOhms(point?.z2), z0: inOhms(point?.z0), ...currents };
 }
 
-/** Gives the smallest currents that protection must see: one line to ground through `faultOhm`, the others bolted. */
-export function reportMinimum(solved: SolvedCase, node: number, faultOhm: number): MinimumState {
-  const { baseMva, nodes } = solved.model;
-  const { kv, phases } = nodes[node]!;
-  const amps = baseAmps(baseMva, kv);
-  const point = findFaultPoint(solved, node);
-  const bolted = largestCurrents(point, phases, amps);
-  const through = { re: faultOhm / baseOhms(baseMva, kv), im: 0 };
-  const lineGround = point
-    ? [0, 1, 2]
-        .filter((phase) => phases & (1 << phase))
-        .map((phase) => magnitude(lineGroundFault(point, phase, through).earth) * amps)
-    : [0];
-  return { threePhase: bolted.threePhase, lineGround: Math.max(...lineGround), lineLine: bolted.lineLine };
-}
-
 function largestCurrents(point: FaultPoint | undefined, phases: number, amps: number): FaultCurrents {
-  const onePhase = phases === 1 || phases === 2 || phases === 4;
-  const ofPair = onePhase ? null : 0;
+  const ofPair = isOnePhase(phases) ? null : 0;
   const largest = {
     threePhase: phases === allPhases ? 0 : null,
     lineGround: 0,
@@ -58,4 +49,121 @@ function largestCurrents(point: FaultPoint | undefined, phases: number, amps: nu
     if (fault.kind === 'lineLineGround') largest.lineLineGroundEarth = magnitude(fault.earth) * amps;
   }
   return largest;
+}
+
+function isOnePhase(phases: number): boolean {
+  return phases === 1 || phases === 2 || phases === 4;
+}
+
+/**
+ * Reports all nodes of the feeder, by id. `caseOf` gives the case that answers for a state at nodes of one voltage;
+ * `faultOhm` is the resistance of the line-to-ground fault of state `minimum`.
+ */
+export function reportNodes(
+  nodes: readonly { id: string; kv: number; phases: number; ofProject: boolean }[],
+  caseOf: (state: StateName, kv: number) => SolvedCase,
+  withProject: boolean,
+  faultOhm: number,
+): Record<string, NodeResult> {
+  const readers = new Map<number, VoltageReaders>();
+  const reports: [string, NodeResult][] = [];
+  for (let node = 0; node < nodes.length; node++) {
+    const { id, kv, ofProject } = nodes[node]!;
+    if (ofProject) continue;
+    let at = readers.get(kv);
+    if (!at) {
+      at = {
+        none: readState(caseOf('none', kv), kv),
+        before: readState(caseOf('before', kv), kv),
+        after: withProject ? readState(caseOf('after', kv), kv) : undefined,
+        minimum: readMinimum(caseOf('minimum', kv), kv, faultOhm),
+      };
+      readers.set(kv, at);
+    }
+    const none = at.none(node);
+    const before = at.before(node);
+    const minimum = at.minimum(node);
+    reports.push([
+      id,
+      at.after ? { none, before, after: at.after(node), minimum } : { none, before, minimum },
+    ]);
+  }
+  return Object.fromEntries(reports);
+}
+
+type VoltageReaders = {
+  none: (node: number) => NodeState;
+  before: (node: number) => NodeState;
+  after: ((node: number) => NodeState) | undefined;
+  minimum: (node: number) => MinimumState;
+};
+
+/** Makes a reader of `reportNode` for all nodes of one voltage, from a single pass over the case. */
+function readState(solved: SolvedCase, kv: number): (node: number) => NodeState {
+  const { busOf, laterals } = solved.topology;
+  const { positive, negative, zero } = solved.networks;
+  const { atBus, atSpot } = faultsOf(solved);
+  const amps = baseAmps(solved.model.baseMva, kv);
+  const ohms = baseOhms(solved.model.baseMva, kv);
+  const inOhms = ({ z, hasPath }: SequenceNetwork, bus: number): Impedance | null =>
+    hasPath[bus] ? { r: z.re[bus]! * ohms, x: z.im[bus]! * ohms } : null;
+  return (node) => {
+    const bus = busOf[node]!;
+    if (bus !== -1) {
+      return {
+        z1: inOhms(positive, bus),
+        z2: inOhms(negative, bus),
+        z0: positive.hasPath[bus] ? inOhms(zero, bus) : null,
+        threePhase: atBus.threePhase[bus]! * amps,
+        lineGround: atBus.lineGround[bus]! * amps,
+        lineLine: atBus.lineLine[bus]! * amps,
+        lineLineGround: atBus.lineLineGround[bus]! * amps,
+        lineLineGroundEarth: atBus.lineLineGroundEarth[bus]! * amps,
+      };
+    }
+    const spot = laterals.spotOf[node]!;
+    if (spot === -1) return reportNode(solved, node);
+    const hasPair = !isOnePhase(laterals.phases[spot]!);
+    return {
+      threePhase: null,
+      lineGround: atSpot.lineGround[spot]! * amps,
+      lineLine: hasPair ? atSpot.lineLine[spot]! * amps : null,
+      lineLineGround: hasPair ? atSpot.lineLineGround[spot]! * amps : null,
+      lineLineGroundEarth: hasPair ? atSpot.lineLineGroundEarth[spot]! * amps : null,
+    };
+  };
+}
+
+/** The smallest currents that protection must see: one line to ground through `faultOhm`, the others bolted. */
+function readMinimum(solved: SolvedCase, kv: number, faultOhm: number): (node: number) => MinimumState {
+  const { busOf, laterals } = solved.topology;
+  const { atBus, atSpot } = faultsOf(solved);
+  const amps = baseAmps(solved.model.baseMva, kv);
+  const through = { re: faultOhm / baseOhms(solved.model.baseMva, kv), im: 0 };
+  const lineGroundThrough = (node: number): number => {
+    const point = findFaultPoint(solved, node);
+    if (!point) return 0;
+    const phases = [0, 1, 2].filter((phase) => point.phases & (1 << phase));
+    return Math.max(...phases.map((phase) => magnitude(lineGroundFault(point, phase, through).earth) * amps));
+  };
+  return (node) => {
+    const bus = busOf[node]!;
+    const spot = laterals.spotOf[node]!;
+    const faults = bus === -1 ? atSpot : atBus;
+    const place = bus === -1 ? spot : bus;
+    if (place === -1) {
+      const { threePhase, lineGround, lineLine } = reportNode(solved, node);
+      return { threePhase, lineGround, lineLine };
+    }
+    const hasPair = bus !== -1 || !isOnePhase(laterals.phases[spot]!);
+    return {
+      threePhase: bus === -1 ? null : faults.threePhase[place]! * amps,
+      lineGround: faultOhm === 0 ? faults.lineGround[place]! * amps : lineGroundThrough(node),
+      lineLine: hasPair ? faults.lineLine[place]! * amps : null,
+    };
+  };
+}
+
+function faultsOf(solved: SolvedCase) {
+  return { atBus: findBusFaults(solved), atSpot: findSpotFaults(solved) };
 }

@@ -1,17 +1,11 @@
-import type { CaseChoice, Model, PhaseTriple } from './case.ts';
+import type { CaseChoice, CurrentSource, Model, PhaseTriple } from './case.ts';
 import { allPhases, isMember, isPresent, phaseA, phaseB, phaseC } from './case.ts';
 import type { Complex, ComplexArray } from './complex.ts';
-import { a, a2, addAt, at, complexArray, multiply, polar, scale, sum } from './complex.ts';
-import { solveInPlace } from './factorization.ts';
+import { a, a2, addAt, complexArray, multiply, polar, scale, sum } from './complex.ts';
 import type { PhaseArrays } from './laterals.ts';
-import {
-  addPhasesAt,
-  phaseArrays,
-  phasesAt,
-  sweepCurrentsToTaps,
-  sweepVoltagesFromTaps,
-} from './laterals.ts';
-import type { SequenceNetwork, SequenceNetworks } from './sequence-networks.ts';
+import { addPhasesAt, phaseArrays, sweepCurrentsToTaps, sweepVoltagesFromTaps } from './laterals.ts';
+import type { SequenceNetworks } from './sequence-networks.ts';
+import { solveVoltages } from './sequence-networks.ts';
 import type { Topology } from './topology.ts';
 
 /*
@@ -56,85 +50,85 @@ export function sequencesOf([ia, ib, ic]: PhaseTriple): { i1: Complex; i2: Compl
  * Shifts turn the negative sequence the other way. Seen from each bus's own positive-sequence voltage, which lags by
  * 30°·hour, a negative-sequence value is therefore off by twice that angle between buses.
  */
+const turns = [0, 1, 2, 3, 4, 5].map((hours) => polar(1, -60 * hours));
+
 export function negativeTurn(clockHours: number): Complex {
-  return polar(1, -60 * clockHours);
+  return turns[((clockHours % 6) + 6) % 6]!;
 }
 
-/** Solves the voltages before the fault at every bus and spot of a case. */
+/** Solves the voltages before the fault at every bus and spot of a case: one sweep for all inverters together. */
 export function solveOpenCircuit(
   model: Model,
   choice: CaseChoice,
   topology: Topology,
   networks: SequenceNetworks,
 ): OpenCircuit {
-  const { busCount, clockHours, laterals } = topology;
-  const atBus = phaseArrays(busCount);
-  const spotFlow = phaseArrays(laterals.tap.length);
-  const { strandedInverters, anyInverter, balanced } = injectInverters();
-  sweepCurrentsToTaps(topology, spotFlow, atBus);
-
+  const { busCount, laterals } = topology;
+  const { taking, stranded } = chooseInverters(model, choice, topology, networks);
+  const balanced = taking.every(({ phases }) => phases === allPhases);
   const v1 = complexArray(busCount);
   const v2 = complexArray(busCount);
   const v0 = complexArray(busCount);
-  if (anyInverter) solveRise();
-  networks.positive.hasPath.forEach((path, bus) => {
-    if (path) v1.re[bus]! += choice.prefaultFactor;
-  });
-  const voltageAtBus = (bus: number) => phasesOf(at(v1, bus), at(v2, bus), at(v0, bus));
-  const spotVoltage = sweepVoltagesFromTaps(model, topology, spotFlow, voltageAtBus);
-  return { v1, v2, v0, spotVoltage, spotFlow, balanced, strandedInverters };
+  const spotFlow = phaseArrays(laterals.tap.length);
+  if (taking.length > 0) {
+    injectCurrents();
+    solveVoltages(networks.positive, v1);
+    if (!balanced) solveUnbalance();
+  }
+  const { hasPath } = networks.positive;
+  for (let bus = 0; bus < busCount; bus++) if (hasPath[bus]) v1.re[bus]! += choice.prefaultFactor;
+  const spotVoltage = sweepVoltagesFromTaps(model, topology, spotFlow, { v1, v2, v0 });
+  return { v1, v2, v0, spotVoltage, spotFlow, balanced, strandedInverters: stranded };
 
-  function injectInverters() {
-    const stranded: number[] = [];
-    let anyTakesPart = false;
-    let allThreePhase = true;
-    for (const inverter of model.inverters) {
-      if (!isMember(choice.inverters, inverter.ofProject) || !isPresent(choice, inverter)) continue;
-      const spot = topology.laterals.spotOf[inverter.node]!;
-      const bus = spot === -1 ? topology.busOf[inverter.node]! : laterals.tap[spot]!;
-      if (bus === -1 || !networks.positive.hasPath[bus]) continue;
-      const isOnePhase = [phaseA, phaseB, phaseC].includes(inverter.phases);
-      if (isOnePhase && !networks.zero.hasPath[bus]) {
-        stranded.push(inverter.node);
-        continue;
-      }
-      anyTakesPart = true;
-      if (inverter.phases !== allPhases) allThreePhase = false;
-      if (spot === -1) addPhasesAt(atBus, bus, inverter.currents);
-      else addPhasesAt(spotFlow, spot, inverter.currents);
+  /** Leaves v2 and v0 at zero where all is balanced: what is left of 1 + a + a² in floating point is not a current. */
+  function injectCurrents(): void {
+    const inject = (bus: number, currents: PhaseTriple) => {
+      const { i1, i2, i0 } = sequencesOf(currents);
+      addAt(v1, bus, i1);
+      if (balanced) return;
+      addAt(v2, bus, multiply(i2, negativeTurn(topology.clockHours[bus]!)));
+      addAt(v0, bus, i0);
+    };
+    for (const { node, currents } of taking) {
+      const spot = laterals.spotOf[node]!;
+      if (spot === -1) inject(topology.busOf[node]!, currents);
+      else addPhasesAt(spotFlow, spot, currents);
     }
-    return { strandedInverters: stranded, anyInverter: anyTakesPart, balanced: allThreePhase };
+    if (!balanced) sweepCurrentsToTaps(topology, spotFlow, inject);
   }
 
-  function solveRise(): void {
+  function solveUnbalance(): void {
+    solveVoltages(networks.negative, v2);
+    solveVoltages(networks.zero, v0);
     for (let bus = 0; bus < busCount; bus++) {
-      const { i1, i2, i0 } = sequencesOf(phasesAt(atBus, bus));
-      addAt(v1, bus, i1);
-      addAt(v2, bus, multiply(i2, negativeTurn(clockHours[bus]!)));
-      addAt(v0, bus, i0);
-    }
-    solveWherePath(networks.positive, v1);
-    if (balanced) {
-      // What is left of 1 + a + a² in floating point is not a voltage.
-      for (const { re, im } of [v2, v0]) {
-        re.fill(0);
-        im.fill(0);
-      }
-      return;
-    }
-    solveWherePath(networks.negative, v2);
-    solveWherePath(networks.zero, v0);
-    for (let bus = 0; bus < busCount; bus++) {
-      const v = multiply(at(v2, bus), negativeTurn(-clockHours[bus]!));
-      v2.re[bus] = v.re;
-      v2.im[bus] = v.im;
+      const hours = topology.clockHours[bus]!;
+      if (hours % 6 === 0) continue;
+      const { re, im } = negativeTurn(-hours);
+      const v2Re = v2.re[bus]!;
+      const v2Im = v2.im[bus]!;
+      v2.re[bus] = re * v2Re - im * v2Im;
+      v2.im[bus] = re * v2Im + im * v2Re;
     }
   }
 }
 
-function solveWherePath({ inverse, hasPath }: SequenceNetwork, values: ComplexArray): void {
-  hasPath.forEach((path, bus) => {
-    if (!path) values.re[bus] = values.im[bus] = 0;
-  });
-  solveInPlace(inverse.factors, values);
+/** Lists the inverters that send current, and the nodes of those that cannot. */
+function chooseInverters(
+  model: Model,
+  choice: CaseChoice,
+  { busOf, laterals }: Topology,
+  networks: SequenceNetworks,
+): { taking: CurrentSource[]; stranded: number[] } {
+  const taking: CurrentSource[] = [];
+  const stranded: number[] = [];
+  for (const inverter of model.inverters) {
+    if (!isMember(choice.inverters, inverter.ofProject) || !isPresent(choice, inverter)) continue;
+    const spot = laterals.spotOf[inverter.node]!;
+    const bus = spot === -1 ? busOf[inverter.node]! : laterals.tap[spot]!;
+    if (bus === -1 || !networks.positive.hasPath[bus]) continue;
+    const isOnePhase = [phaseA, phaseB, phaseC].includes(inverter.phases);
+    if (isOnePhase && !networks.zero.hasPath[bus]) stranded.push(inverter.node);
+    else taking.push(inverter);
+  }
+  return { taking, stranded };
 }

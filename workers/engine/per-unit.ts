@@ -1,5 +1,5 @@
 import type { Impedance, Neutral } from '../../shared/schemas/study.ts';
-import { phaseA, phaseB, phaseC } from './case.ts';
+import { allPhases, phaseA, phaseB, phaseC } from './case.ts';
 import type { Complex } from './complex.ts';
 import { scale, zero } from './complex.ts';
 
@@ -20,6 +20,7 @@ export function baseAmps(baseMva: number, kv: number): number {
 
 /** Reads "AC" as a set of bits. */
 export function phaseSet(phases: string): number {
+  if (phases === 'ABC') return allPhases;
   return (
     (phases.includes('A') ? phaseA : 0) |
     (phases.includes('B') ? phaseB : 0) |

@@ -1,107 +1,139 @@
 import type {
-  GroundingBank,
+  ElementLists,
   Line,
   Machine,
-  Source,
+  Project,
   SourceStrength,
   Study,
 } from '../../shared/schemas/study.ts';
-import type { Belonging, Branch, Model, ModelSource, Shunt } from './case.ts';
+import type { Branch, CurrentSource, Model, ModelNode, ModelSource, ModelSwitch, Shunt } from './case.ts';
+import { allPhases } from './case.ts';
 import type { Complex } from './complex.ts';
-import { add, scale, subtract } from './complex.ts';
+import { add, scale, subtract, zero } from './complex.ts';
 import { inverterCurrents } from './inverter-currents.ts';
+import type { LineImpedances } from './line-impedances.ts';
+import { lineImpedances } from './line-impedances.ts';
 import { baseOhms, earthing, perUnit, phaseSet } from './per-unit.ts';
 import type { ElementKind, Placed } from './study-elements.ts';
-import { eachElement } from './study-elements.ts';
 import { transformerBranch } from './transformer-branch.ts';
 
 /** Turns a checked study into the model that every case is solved on. */
 export function prepareModel(study: Study): Model {
   const { baseMva } = study;
-  const nodes = mapElements(study, 'nodes', ({ id, kv, phases }, belonging) => {
-    return { id, kv, phases: phaseSet(phases), ...belonging };
+  const nodes = mapElements(study, 'nodes', ({ id, kv, phases }, ofProject, companion): ModelNode => {
+    return { id, ofProject, companion, kv, phases: phaseSet(phases) };
   });
-  const nodeIndex = new Map(nodes.map((node, index) => [node.id, index]));
+  const nodeIndex = indexById(nodes);
   const indexOf = (id: string) => nodeIndex.get(id)!;
-  const ohmsAt = (id: string) => baseOhms(baseMva, nodes[indexOf(id)]!.kv);
+  const ohmsOf = (node: number) => baseOhms(baseMva, nodes[node]!.kv);
+  const impedancesOf = lineImpedances(study);
 
-  const branches: Branch[] = [
-    ...mapElements(study, 'lines', (line, belonging) => {
-      const ends = { from: indexOf(line.from), to: indexOf(line.to) };
-      return { ...ends, ...lineBranch(line, ohmsAt(line.from)), ...belonging };
-    }),
-    ...mapElements(study, 'transformers', (transformer, belonging) => {
-      const ends = { from: indexOf(transformer.from), to: indexOf(transformer.to) };
-      const kvTo = nodes[ends.to]!.kv;
-      return {
-        ...ends,
-        ...transformerBranch(transformer, baseMva, nodes[ends.from]!.kv, kvTo),
-        ...belonging,
-      };
-    }),
-  ];
-  const shuntOf =
-    <E extends { node: string }>(impedances: (element: E, ohms: number) => SequenceImpedances) =>
-    (element: E, belonging: Belonging): Shunt => ({
-      node: indexOf(element.node),
-      ...impedances(element, ohmsAt(element.node)),
-      ...belonging,
-    });
+  const branches = mapElements(study, 'lines', (line, ofProject, companion): Branch => {
+    const from = indexOf(line.from);
+    return lineBranch(line, from, indexOf(line.to), impedancesOf(line), ohmsOf(from), ofProject, companion);
+  });
+  const transformers = mapElements(study, 'transformers', (transformer, ofProject, companion): Branch => {
+    const from = indexOf(transformer.from);
+    const to = indexOf(transformer.to);
+    const electrical = transformerBranch(transformer, baseMva, nodes[from]!.kv, nodes[to]!.kv);
+    return { id: transformer.id, ofProject, companion, from, to, ...electrical };
+  });
+  for (const transformer of transformers) branches.push(transformer);
+
   return {
     baseMva,
     nodes,
     nodeIndex,
     branches,
-    branchIndex: new Map(branches.map((branch, index) => [branch.id, index])),
-    switches: mapElements(study, 'switches', ({ from, to, closed }, belonging) => {
-      return { from: indexOf(from), to: indexOf(to), closed, ...belonging };
-    }),
-    sources: mapElements(study, 'sources', (source, belonging): ModelSource => {
-      const shunt = (strength: SourceStrength) =>
-        shuntOf<Source>((_, ohms) => sourceImpedances(strength, ohms))(source, belonging);
-      return { max: shunt(source.max), min: shunt(source.min ?? source.max) };
-    }),
-    machines: mapElements(
+    branchIndex: indexById(branches),
+    switches: mapElements(
       study,
-      'machines',
-      shuntOf((machine: Machine, ohms) => machineImpedances(machine, baseMva, ohms)),
+      'switches',
+      ({ id, from, to, closed }, ofProject, companion): ModelSwitch => {
+        return { id, ofProject, companion, from: indexOf(from), to: indexOf(to), closed };
+      },
     ),
+    sources: mapElements(
+      study,
+      'sources',
+      ({ id, node: at, max, min }, ofProject, companion): ModelSource => {
+        const node = indexOf(at);
+        const shunt = (strength: SourceStrength): Shunt => {
+          return { id, ofProject, companion, node, ...sourceImpedances(strength, ohmsOf(node)) };
+        };
+        return { max: shunt(max), min: shunt(min ?? max) };
+      },
+    ),
+    machines: mapElements(study, 'machines', (machine, ofProject, companion): Shunt => {
+      const node = indexOf(machine.node);
+      const { z1, z2, z0 } = machineImpedances(machine, baseMva, ohmsOf(node));
+      return { id: machine.id, ofProject, companion, node, z1, z2, z0 };
+    }),
     groundingBanks: mapElements(
       study,
       'groundingBanks',
-      shuntOf(({ z0 }: GroundingBank, ohms) => ({ z1: null, z2: null, z0: perUnit(z0, ohms) })),
+      ({ id, node: at, z0 }, ofProject, companion): Shunt => {
+        const node = indexOf(at);
+        return { id, ofProject, companion, node, z1: null, z2: null, z0: perUnit(z0, ohmsOf(node)) };
+      },
     ),
-    inverters: mapElements(study, 'inverters', (inverter, belonging) => ({
-      node: indexOf(inverter.node),
-      phases: phaseSet(inverter.phases),
-      currents: inverterCurrents(inverter, baseMva),
-      ...belonging,
-    })),
+    inverters: mapElements(study, 'inverters', (inverter, ofProject, companion): CurrentSource => {
+      const phases = phaseSet(inverter.phases);
+      const currents = inverterCurrents(inverter, baseMva);
+      return { id: inverter.id, ofProject, companion, node: indexOf(inverter.node), phases, currents };
+    }),
   };
 }
 
 type SequenceImpedances = Pick<Shunt, 'z1' | 'z2' | 'z0'>;
 
+/** Goes through all elements of a kind, the feeder's before the project's. */
 function mapElements<K extends ElementKind, R>(
   study: Study,
   kind: K,
-  make: (element: Placed<K>['element'], belonging: Belonging) => R,
+  make: (element: Placed<K>['element'], ofProject: boolean, companion: boolean) => R,
 ): R[] {
-  return Array.from(eachElement(study, kind), ({ element, ofProject }) =>
-    make(element, { ofProject, companion: 'with' in element && element.with !== undefined }),
-  );
+  const made: R[] = [];
+  for (const part of ['feeder', 'project'] as const) {
+    const lists: Pick<Project, 'nodes' | keyof ElementLists> | undefined = study[part];
+    for (const element of (lists?.[kind] ?? []) as Placed<K>['element'][]) {
+      made.push(make(element, part === 'project', 'with' in element && element.with !== undefined));
+    }
+  }
+  return made;
 }
 
-function lineBranch(line: Line, ohms: number): Omit<Branch, 'from' | 'to' | keyof Belonging> {
-  const z1 = scale(perUnit(line.z1, ohms), line.km);
-  const z0 = scale(perUnit(line.z0, ohms), line.km);
+function indexById(elements: readonly { id: string }[]): Map<string, number> {
+  const index = new Map<string, number>();
+  for (let at = 0; at < elements.length; at++) index.set(elements[at]!.id, at);
+  return index;
+}
+
+function lineBranch(
+  line: Line,
+  from: number,
+  to: number,
+  perKm: LineImpedances,
+  ohms: number,
+  ofProject: boolean,
+  companion: boolean,
+): Branch {
+  const perOhm = line.km / ohms;
+  const z1 = { re: perKm.z1.r * perOhm, im: perKm.z1.x * perOhm };
+  const z0 = { re: perKm.z0.r * perOhm, im: perKm.z0.x * perOhm };
+  const phases = phaseSet(line.phases);
+  const isLateral = phases !== allPhases;
   return {
     id: line.id,
-    phases: phaseSet(line.phases),
+    ofProject,
+    companion,
+    from,
+    to,
+    phases,
     z1,
     zeroSequence: { kind: 'series', z: z0 },
-    self: scale(add(z0, scale(z1, 2)), 1 / 3),
-    mutual: scale(subtract(z0, z1), 1 / 3),
+    self: isLateral ? scale(add(z0, scale(z1, 2)), 1 / 3) : zero,
+    mutual: isLateral ? scale(subtract(z0, z1), 1 / 3) : zero,
     clockHour: 0,
   };
 }

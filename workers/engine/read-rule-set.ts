@@ -1,7 +1,7 @@
 import { askedQuestions } from '../../shared/schemas/findings.ts';
 import type { RuleSet } from '../../shared/schemas/rule-sets.ts';
 import { parseJson } from './read-study.ts';
-import type { Problem } from './shape.ts';
+import { Problems } from './problems.ts';
 import { expect, listOf, name, number, object, oneOf, positive, text, wholeFile } from './shape.ts';
 
 const limit = object({
@@ -30,10 +30,10 @@ const checkRuleSet = object({
 });
 
 /** Reads a rule set from its file; no input makes it throw. */
-export function readRuleSet(fileText: string): { ruleSet: RuleSet } | { problems: Problem[] } {
+export function readRuleSet(fileText: string): { ruleSet: RuleSet } | { problems: Problems } {
   const parsed = parseJson(fileText);
   if ('problems' in parsed) return parsed;
-  const problems: Problem[] = [];
+  const problems = new Problems();
   checkRuleSet(parsed.value, wholeFile, problems);
   return problems.length > 0 ? { problems } : { ruleSet: parsed.value as RuleSet };
 }

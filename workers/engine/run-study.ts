@@ -1,18 +1,21 @@
 import type { RuleSet } from '../../shared/schemas/rule-sets.ts';
-import type { DeviceResult, NodeResult, StudyResult } from '../../shared/schemas/study-result.ts';
+import type { DeviceDuty, DeviceResult, StudyResult } from '../../shared/schemas/study-result.ts';
 import { resultFormat } from '../../shared/schemas/study-result.ts';
-import type { Study } from '../../shared/schemas/study.ts';
+import type { Device, Study } from '../../shared/schemas/study.ts';
 import type { Model } from './case.ts';
+import { findDeviceAsymmetry } from './device-asymmetry.ts';
 import { findDeviceDuty } from './devices.ts';
 import { answerQuestions } from './findings/questions.ts';
 import { traceUpstream } from './findings/upstream.ts';
-import { reportMinimum, reportNode } from './node-results.ts';
+import { reportLines } from './line-results.ts';
+import { reportNodes } from './node-results.ts';
+import { listMethodWarnings } from './iec60909.ts';
 import { prepareModel } from './prepare-model.ts';
 import { reportGrounding, reportProject, solveIsland } from './project-results.ts';
 import type { SolvedCase } from './solve-case.ts';
-import { solveCase } from './solve-case.ts';
+import type { DutyState, StateSolver } from './state-solver.ts';
+import { makeStateSolver } from './state-solver.ts';
 import type { StateName } from './states.ts';
-import { choiceOfState } from './states.ts';
 import { listWarnings } from './warnings.ts';
 
 /** A step that is about to be taken: `done` of `total` are behind it. */
@@ -43,70 +46,69 @@ export function runStudy(study: Study, ruleSet: RuleSet, onStep?: (step: StudySt
 
   begin('network');
   const model = prepareModel(study);
+  const solver = makeStateSolver(study, model);
+  const { kv } = model.nodes[model.nodeIndex.get(study.project?.node ?? study.feeder.nodes[0]!.id)!]!;
   const solve = (state: StateName): SolvedCase => {
     begin(state);
-    return solveCase(model, choiceOfState(state, study));
+    return solver.solve(state, kv);
   };
-  const states = {
-    none: solve('none'),
-    before: solve('before'),
-    after: solve('after'),
-    minimum: solve('minimum'),
-  };
+  const none = solve('none');
+  const before = solve('before');
+  if (!study.project) begin('after');
+  // Without a project nothing tells the two apart.
+  const after = study.project ? solve('after') : before;
+  const states = { none, before, after, minimum: solve('minimum') };
 
   begin('nodes');
-  const nodes = reportNodes(study, model, states);
+  const nodes = reportNodes(
+    model.nodes,
+    solver.solve,
+    study.project !== undefined,
+    study.minimumFaultOhm ?? 0,
+  );
 
   begin('devices');
-  const devices = reportDevices(study, states);
+  const devices = reportDevices(study, model, solver);
 
+  const { lines, warnings } = reportLines(study);
   const { project } = study;
   const result: StudyResult = {
     format: resultFormat,
     nodes,
     devices,
+    ...(lines ? { lines } : {}),
     findings: [],
-    warnings: listWarnings(study, states),
+    warnings: [...listWarnings(study, states), ...listMethodWarnings(study), ...warnings],
   };
   if (project) {
     const poi = model.nodeIndex.get(project.node)!;
     begin('grounding');
-    const { none, before, after } = nodes[project.node]!;
-    result.project = reportProject(project, model, { none, before, after: after! });
+    const atPoi = nodes[project.node]!;
+    result.project = reportProject(project, model, { ...atPoi, after: atPoi.after! });
     result.grounding = {
       connected: reportGrounding(states.after, poi),
       island: reportGrounding(solveIsland(model), poi),
     };
     begin('findings');
     const upstream = traceUpstream(model, states.after.choice, poi);
-    result.findings = answerQuestions({ study, project, ruleSet, model, states, poi, upstream });
+    result.findings = answerQuestions({ study, project, ruleSet, model, states, poi, upstream, solver });
   }
   begin('finished');
   return result;
 }
 
-function reportNodes(
-  study: Study,
-  model: Model,
-  states: Record<StateName, SolvedCase>,
-): Record<string, NodeResult> {
-  const report = (node: number): NodeResult => ({
-    none: reportNode(states.none, node),
-    before: reportNode(states.before, node),
-    ...(study.project ? { after: reportNode(states.after, node) } : {}),
-    minimum: reportMinimum(states.minimum, node, study.minimumFaultOhm ?? 0),
-  });
-  return Object.fromEntries(study.feeder.nodes.map(({ id }) => [id, report(model.nodeIndex.get(id)!)]));
-}
-
-function reportDevices(study: Study, states: Record<StateName, SolvedCase>): Record<string, DeviceResult> {
+function reportDevices(study: Study, model: Model, { solveDuty }: StateSolver): Record<string, DeviceResult> {
+  const report = (state: DutyState, device: Device): DeviceDuty => {
+    const branch = model.branches[model.branchIndex.get(device.branch)!]!;
+    const duty = solveDuty(state, model.nodes[branch[device.end]]!.kv);
+    // X/R says something of a rating; without one, two more networks would be solved for nothing.
+    const asymmetry = device.interruptingKa === undefined ? undefined : findDeviceAsymmetry(duty, device);
+    return { ...findDeviceDuty(duty.solved, device), ...asymmetry };
+  };
   return Object.fromEntries(
     (study.feeder.devices ?? []).map((device) => [
       device.id,
-      {
-        before: findDeviceDuty(states.before, device),
-        ...(study.project ? { after: findDeviceDuty(states.after, device) } : {}),
-      },
+      { before: report('before', device), ...(study.project ? { after: report('after', device) } : {}) },
     ]),
   );
 }

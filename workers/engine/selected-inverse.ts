@@ -20,56 +20,60 @@ export type SelectedInverse = {
 
 /** Computes the selected entries; the cost is that of the factorization, linear on a tree. */
 export function invertSelected(factors: Factors): SelectedInverse {
-  const { rows, lower, pivots, structure } = factors;
-  const { columnStart } = structure;
+  const { lower, pivots, structure } = factors;
+  const { columnStart, rows } = structure;
   const count = pivots.re.length;
   const diagonal = complexArray(count);
   const below = complexArray(rows.length);
+  const { re: lRe, im: lIm } = lower;
+  const { re: zRe, im: zIm } = below;
   for (let j = count - 1; j >= 0; j--) {
     const start = columnStart[j]!;
     const end = columnStart[j + 1]!;
-    for (let p = start; p < end; p++) accumulate(p, end);
-    const square = pivots.re[j]! ** 2 + pivots.im[j]! ** 2;
-    let zRe = pivots.re[j]! / square;
-    let zIm = -pivots.im[j]! / square;
+    // What row rows[p] of the finished part adds to the entries of this column from p on.
     for (let p = start; p < end; p++) {
-      zRe -= lower.re[p]! * below.re[p]! - lower.im[p]! * below.im[p]!;
-      zIm -= lower.re[p]! * below.im[p]! + lower.im[p]! * below.re[p]!;
+      const i = rows[p]!;
+      const ownRe = diagonal.re[i]!;
+      const ownIm = diagonal.im[i]!;
+      let sumRe = lRe[p]! * ownRe - lIm[p]! * ownIm;
+      let sumIm = lRe[p]! * ownIm + lIm[p]! * ownRe;
+      // Both lists ascend, and all later rows of this column are among those of column i.
+      let found = columnStart[i]!;
+      for (let q = p + 1; q < end; q++) {
+        while (rows[found]! < rows[q]!) found++;
+        const re = zRe[found]!;
+        const im = zIm[found]!;
+        sumRe += lRe[q]! * re - lIm[q]! * im;
+        sumIm += lRe[q]! * im + lIm[q]! * re;
+        zRe[q]! -= lRe[p]! * re - lIm[p]! * im;
+        zIm[q]! -= lRe[p]! * im + lIm[p]! * re;
+      }
+      zRe[p]! -= sumRe;
+      zIm[p]! -= sumIm;
     }
-    diagonal.re[j] = zRe;
-    diagonal.im[j] = zIm;
+    const square = pivots.re[j]! ** 2 + pivots.im[j]! ** 2;
+    let re = pivots.re[j]! / square;
+    let im = -pivots.im[j]! / square;
+    for (let p = start; p < end; p++) {
+      re -= lRe[p]! * zRe[p]! - lIm[p]! * zIm[p]!;
+      im -= lRe[p]! * zIm[p]! + lIm[p]! * zRe[p]!;
+    }
+    diagonal.re[j] = re;
+    diagonal.im[j] = im;
   }
   return { factors, diagonal, below };
-
-  /** Takes what row rows[p] of the finished part adds to the entries p … end of the current column. */
-  function accumulate(p: number, end: number): void {
-    const i = rows[p]!;
-    subtractProduct(p, p, diagonal.re[i]!, diagonal.im[i]!);
-    // Both lists ascend, and all later rows of this column are among those of column i.
-    let found = columnStart[i]!;
-    for (let q = p + 1; q < end; q++) {
-      while (rows[found]! < rows[q]!) found++;
-      subtractProduct(p, q, below.re[found]!, below.im[found]!);
-      subtractProduct(q, p, below.re[found]!, below.im[found]!);
-    }
-  }
-
-  function subtractProduct(target: number, factor: number, zRe: number, zIm: number): void {
-    below.re[target]! -= lower.re[factor]! * zRe - lower.im[factor]! * zIm;
-    below.im[target]! -= lower.re[factor]! * zIm + lower.im[factor]! * zRe;
-  }
 }
 
-/** Gives Z_uu of a bus. */
-export function drivingPoint(inverse: SelectedInverse, u: number): Complex {
+/** Gives Z_uu of a bus of the mesh. */
+export function meshDrivingPoint(inverse: SelectedInverse, u: number): Complex {
   const j = inverse.factors.structure.place[u]!;
   return { re: inverse.diagonal.re[j]!, im: inverse.diagonal.im[j]! };
 }
 
-/** Gives Z_uv of two buses that are the same or joined by a branch; any other pair throws. */
-export function transferOfPair(inverse: SelectedInverse, u: number, v: number): Complex {
-  if (u === v) return drivingPoint(inverse, u);
-  const { structure, rows } = inverse.factors;
+/** Gives Z_uv of two buses of the mesh that a branch joins; any other pair throws. */
+export function meshTransfer(inverse: SelectedInverse, u: number, v: number): Complex {
+  const { structure } = inverse.factors;
+  const { rows } = structure;
   const j = Math.min(structure.place[u]!, structure.place[v]!);
   const i = Math.max(structure.place[u]!, structure.place[v]!);
   let low = structure.columnStart[j]!;

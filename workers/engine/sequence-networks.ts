@@ -1,23 +1,36 @@
-import type { Branch, CaseChoice, Model, Shunt } from './case.ts';
+import type { CaseChoice, Model, Shunt } from './case.ts';
 import { isMember, isPresent } from './case.ts';
-import type { Complex } from './complex.ts';
-import { addAt, complexArray, divide } from './complex.ts';
-import { orderByMinimumDegree } from './elimination-order.ts';
-import { analyseStructure, factorize } from './factorization.ts';
-import { DisjointSets } from './graph.ts';
+import type { Complex, ComplexArray } from './complex.ts';
+import { complexArray } from './complex.ts';
+import { factorize, solveInPlace } from './factorization.ts';
 import type { SelectedInverse } from './selected-inverse.ts';
-import { invertSelected } from './selected-inverse.ts';
+import { invertSelected, meshDrivingPoint, meshTransfer } from './selected-inverse.ts';
 import type { Topology } from './topology.ts';
+import type { Trees } from './tree-sweep.ts';
+import {
+  sweepCurrentsTowardsMesh,
+  sweepFromMesh,
+  sweepTowardsMesh,
+  sweepVoltagesFromMesh,
+} from './tree-sweep.ts';
+import { wiringOf } from './wiring.ts';
 
 /*
- * The three networks of a case, each as the wanted entries of its inverse. They share buses and branches, and so one
- * elimination order; the zero sequence merely lacks some of the branches.
+ * The three networks of a case. They share buses, branches and elimination order; the zero sequence merely lacks some of
+ * the branches. Trees are swept, and the mesh alone is factorized.
  */
 
 export type SequenceNetwork = {
-  readonly inverse: SelectedInverse;
-  /** By bus: whether current has a path at all. Where it has none the entries of the inverse mean nothing. */
+  readonly trees: Trees;
+  /** By bus: the share of its parent's voltage that it sees (see tree-sweep.ts); without meaning in the mesh. */
+  readonly shares: ComplexArray;
+  readonly mesh: SelectedInverse;
+  /** By bus: driving-point impedance. */
+  readonly z: ComplexArray;
+  /** By bus: whether current has a path at all. Where it has none the impedances mean nothing. */
   readonly hasPath: Uint8Array;
+  /** Buses where the network resonates, so that numbers are unsafe. */
+  readonly weakBuses: readonly number[];
 };
 
 export type SequenceNetworks = {
@@ -26,87 +39,116 @@ export type SequenceNetworks = {
   readonly zero: SequenceNetwork;
 };
 
-const unity: Complex = { re: 1, im: 0 };
-
-/** Builds, factorizes and inverts the networks of one case. */
+/** Builds, sweeps and factorizes the networks of one case. */
 export function solveSequenceNetworks(
   model: Model,
   choice: CaseChoice,
   topology: Topology,
 ): SequenceNetworks {
-  const shunts = listShunts(model, choice);
-  const branches = topology.coreBranches.map((index) => model.branches[index]!);
-  const structure = analyseStructure(
-    { start: topology.core.start, neighbour: topology.core.neighbour },
-    orderByMinimumDegree(topology.core),
-  );
-
-  const feeds = (z: (shunt: Shunt) => Complex | null) => {
-    const ends: Feed[] = [];
-    for (const shunt of shunts) {
-      const value = z(shunt);
-      const bus = topology.busOf[shunt.node]!;
-      if (value && bus !== -1) ends.push({ bus, z: value });
-    }
-    return ends;
-  };
-  const series = branches.map((branch) => branch.z1);
-  const positive = solve(
-    series,
-    feeds((shunt) => shunt.z1),
-  );
-  const zeroFeeds = feeds((shunt) => shunt.z0);
-  for (const [bus, z] of transformerEarths(model, choice, topology)) zeroFeeds.push({ bus, z });
+  const solve = (sequence: Sequence) =>
+    solveNetwork(topology, sequence, listFeeds(model, choice, topology, sequence));
+  const positive = solve('z1');
   return {
     positive,
     // Lines and transformers do not tell the two apart, so only machines and sources can.
-    negative: shunts.every(isSymmetrical)
-      ? positive
-      : solve(
-          series,
-          feeds((shunt) => shunt.z2),
-        ),
-    zero: solve(branches.map(seriesOfZeroSequence), zeroFeeds),
+    negative: listShunts(model, choice).every(isSymmetrical) ? positive : solve('z2'),
+    zero: solve('z0'),
   };
+}
 
-  function solve(seriesZ: readonly (Complex | null)[], seriesFeeds: readonly Feed[]): SequenceNetwork {
-    const { busCount, core } = topology;
-    const diagonal = complexArray(busCount);
-    const offDiagonal = complexArray(core.neighbour.length);
-    const parts = new DisjointSets(busCount);
-    for (let bus = 0; bus < busCount; bus++) {
-      for (let p = core.start[bus]!; p < core.start[bus + 1]!; p++) {
-        const z = seriesZ[core.edge[p]!];
-        if (!z) continue;
-        const y = divide(unity, z);
-        addAt(diagonal, bus, y);
-        offDiagonal.re[p] = -y.re;
-        offDiagonal.im[p] = -y.im;
-        parts.join(bus, core.neighbour[p]!);
-      }
-    }
-    const fed = new Uint8Array(busCount);
-    for (const { bus, z } of seriesFeeds) {
-      addAt(diagonal, bus, divide(unity, z));
-      fed[parts.find(bus)] = 1;
-    }
-    const hasPath = Uint8Array.from(fed, (_, bus) => fed[parts.find(bus)]!);
-    // A part without a path to earth has no inverse; a unit admittance at each bus lets the rest be solved with it.
-    hasPath.forEach((path, bus) => {
-      if (!path) addAt(diagonal, bus, unity);
-    });
-    return { inverse: invertSelected(factorize(structure, diagonal, offDiagonal)), hasPath };
+type Sequence = 'z1' | 'z2' | 'z0';
+
+type Feed = { bus: number; z: Complex };
+
+function solveNetwork(topology: Topology, sequence: Sequence, feeds: readonly Feed[]): SequenceNetwork {
+  const { busCount, meshCount } = topology;
+  const isZero = sequence === 'z0';
+  const trees: Trees = {
+    parent: isZero ? topology.zeroParent : topology.parent,
+    series: isZero ? topology.z0 : topology.z1,
+    meshCount,
+  };
+  const shares = complexArray(busCount);
+  const hasPath = new Uint8Array(busCount);
+  const meshScale = new Float64Array(meshCount);
+  for (const { bus, z } of feeds) {
+    const square = z.re * z.re + z.im * z.im;
+    shares.re[bus]! += z.re / square;
+    shares.im[bus]! -= z.im / square;
+    hasPath[bus] = 1;
+    if (bus < meshCount) meshScale[bus]! += (Math.abs(z.re) + Math.abs(z.im)) / square;
   }
+  const weakBuses: number[] = [];
+  sweepTowardsMesh(trees, shares, hasPath, meshScale, weakBuses);
+  const z = complexArray(busCount);
+  const mesh = solveMesh(topology, isZero, shares, hasPath, meshScale, weakBuses);
+  for (let bus = 0; bus < meshCount; bus++) {
+    const own = meshDrivingPoint(mesh, bus);
+    z.re[bus] = own.re;
+    z.im[bus] = own.im;
+  }
+  sweepFromMesh(trees, shares, z, hasPath, weakBuses);
+  return { trees, shares, mesh, z, hasPath, weakBuses };
+}
+
+/** Adds the mesh's branches to what its buses carry, and inverts; says in `hasPath` which parts of it are fed. */
+function solveMesh(
+  { mesh, meshCount }: Topology,
+  isZero: boolean,
+  behind: ComplexArray,
+  hasPath: Uint8Array,
+  scale: Float64Array,
+  weakBuses: number[],
+): SelectedInverse {
+  const { structure } = mesh;
+  const series = isZero ? mesh.zero : mesh.positive;
+  const partOf = isZero ? mesh.zeroPartOf : mesh.partOf;
+  for (let bus = 0; bus < meshCount; bus++) if (hasPath[bus]) hasPath[partOf[bus]!] = 1;
+  const diagonal = complexArray(meshCount);
+  for (let bus = 0; bus < meshCount; bus++) {
+    hasPath[bus] = hasPath[partOf[bus]!]!;
+    // A part without a path to earth has no inverse; a unit admittance at each bus lets the rest be solved with it.
+    diagonal.re[bus] = series.diagonal.re[bus]! + (hasPath[bus] ? behind.re[bus]! : 1);
+    diagonal.im[bus] = series.diagonal.im[bus]! + (hasPath[bus] ? behind.im[bus]! : 0);
+    scale[bus]! += series.scale[bus]!;
+  }
+  const factors = factorize(structure, diagonal, series.offDiagonal, scale);
+  for (const bus of factors.weakBuses) weakBuses.push(bus);
+  return invertSelected(factors);
+}
+
+/** Gives Z_uu of a bus. */
+export function drivingPoint({ z }: SequenceNetwork, bus: number): Complex {
+  return { re: z.re[bus]!, im: z.im[bus]! };
+}
+
+/** Gives Z_uv of two buses that are the same or joined by a branch; any other pair throws. */
+export function transferOfPair(network: SequenceNetwork, u: number, v: number): Complex {
+  if (u === v) return drivingPoint(network, u);
+  const { trees, mesh, shares, z } = network;
+  const { parent, meshCount } = trees;
+  if (u < meshCount && v < meshCount) return meshTransfer(mesh, u, v);
+  const child = Math.max(u, v);
+  const p = Math.min(u, v);
+  if (parent[child] !== p) throw new Error(`Expected two buses joined by a branch, got ${u} and ${v}.`);
+  return {
+    re: shares.re[child]! * z.re[p]! - shares.im[child]! * z.im[p]!,
+    im: shares.re[child]! * z.im[p]! + shares.im[child]! * z.re[p]!,
+  };
+}
+
+/** Turns currents out of the buses into the voltages they make, V = Z·I for all buses at once, in place. */
+export function solveVoltages({ trees, shares, mesh, hasPath }: SequenceNetwork, values: ComplexArray): void {
+  for (let bus = 0; bus < hasPath.length; bus++) {
+    if (hasPath[bus] === 0) values.re[bus] = values.im[bus] = 0;
+  }
+  sweepCurrentsTowardsMesh(trees, shares, values);
+  solveInPlace(mesh.factors, values);
+  sweepVoltagesFromMesh(trees, shares, values);
 }
 
 function isSymmetrical({ z1, z2 }: Shunt): boolean {
   return z1?.re === z2?.re && z1?.im === z2?.im;
-}
-
-type Feed = { bus: number; z: Complex };
-
-function seriesOfZeroSequence({ zeroSequence }: Branch): Complex | null {
-  return zeroSequence.kind === 'series' ? zeroSequence.z : null;
 }
 
 /** The sources, machines and banks that take part. */
@@ -128,21 +170,34 @@ function listShunts(model: Model, choice: CaseChoice): Shunt[] {
   return shunts;
 }
 
-/** Zero-sequence shunts of star-delta transformers, also of one that is opened at its other end. */
-function* transformerEarths(
+/** Lists what ties a sequence to earth: sources, machines, banks and star-delta transformers. */
+export function listFeeds(
   model: Model,
   choice: CaseChoice,
   topology: Topology,
-): Generator<[number, Complex]> {
-  const { busOf, coreBranches } = topology;
-  const opened = choice.opened;
-  const candidates = opened ? [...coreBranches, opened.branch] : coreBranches;
-  for (const index of candidates) {
+  sequence: Sequence,
+): readonly Feed[] {
+  const feeds = sequence === 'z0' ? listTransformerEarths(model, choice, topology) : [];
+  for (const shunt of listShunts(model, choice)) {
+    const z = shunt[sequence];
+    const bus = topology.busOf[shunt.node]!;
+    if (z && bus !== -1) feeds.push({ bus, z });
+  }
+  return feeds;
+}
+
+/** Zero-sequence shunts of star-delta transformers, also of one that is opened at its other end. */
+function listTransformerEarths(model: Model, choice: CaseChoice, { busOf }: Topology): Feed[] {
+  const earths: Feed[] = [];
+  for (const index of wiringOf(model).earthing) {
     const branch = model.branches[index]!;
     const path = branch.zeroSequence;
     if (path.kind !== 'shunt' || !isPresent(choice, branch)) continue;
-    const bus = busOf[branch[path.end]]!;
-    if (bus === -1 || (opened?.branch === index && opened.end === path.end)) continue;
-    yield [bus, path.z];
+    const opening = choice.opened?.find((each) => each.branch === index);
+    if (opening?.end === path.end || busOf[branch[path.end]] === -1) continue;
+    // Unless it is opened, a branch is there only where both its ends are.
+    if (!opening && busOf[branch[path.end === 'from' ? 'to' : 'from']] === -1) continue;
+    earths.push({ bus: busOf[branch[path.end]]!, z: path.z });
   }
+  return earths;
 }

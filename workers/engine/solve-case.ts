@@ -6,11 +6,10 @@ import type { LateralPaths } from './laterals.ts';
 import { addUpPaths, phasesAt } from './laterals.ts';
 import type { OpenCircuit } from './open-circuit.ts';
 import { phasesOf, solveOpenCircuit } from './open-circuit.ts';
-import { drivingPoint } from './selected-inverse.ts';
 import type { SequenceNetworks } from './sequence-networks.ts';
-import { solveSequenceNetworks } from './sequence-networks.ts';
+import { drivingPoint, solveSequenceNetworks } from './sequence-networks.ts';
 import type { Topology } from './topology.ts';
-import { traceTopology } from './topology.ts';
+import { shareTopology } from './topology.ts';
 
 /** A case with everything that a fault anywhere in it needs. */
 export type SolvedCase = {
@@ -24,7 +23,7 @@ export type SolvedCase = {
 
 /** Solves one choice of what is in and out. */
 export function solveCase(model: Model, choice: CaseChoice): SolvedCase {
-  const topology = traceTopology(model, choice);
+  const topology = shareTopology(model, choice);
   const networks = solveSequenceNetworks(model, choice, topology);
   const openCircuit = solveOpenCircuit(model, choice, topology, networks);
   return { model, choice, topology, networks, paths: addUpPaths(model, topology), openCircuit };
@@ -44,9 +43,9 @@ export function findFaultPoint(solved: SolvedCase, node: number): FaultPoint | u
   const spot = topology.laterals.spotOf[node]!;
   return {
     phases: spot === -1 ? allPhases : topology.laterals.phases[spot]!,
-    z1: drivingPoint(networks.positive.inverse, bus),
-    z2: drivingPoint(networks.negative.inverse, bus),
-    z0: networks.zero.hasPath[bus] ? drivingPoint(networks.zero.inverse, bus) : null,
+    z1: drivingPoint(networks.positive, bus),
+    z2: drivingPoint(networks.negative, bus),
+    z0: networks.zero.hasPath[bus] ? drivingPoint(networks.zero, bus) : null,
     self: spot === -1 ? zero : at(paths.self, spot),
     mutual: spot === -1 ? zero : at(paths.mutual, spot),
     voltage:

@@ -1,14 +1,17 @@
-import type { Impedance, Machine } from '../../shared/schemas/study.ts';
+import type { Impedance, Load, Machine } from '../../shared/schemas/study.ts';
 import { studyFormat } from '../../shared/schemas/study.ts';
+import { constructionLists, impedanceOrConstruction } from './line-shape.ts';
 import type { Check } from './shape.ts';
 import {
   between,
-  describeValue,
+  check,
+  checkByNotes,
   expect,
   listOf,
   matching,
   name,
   notNegative,
+  noteProblem,
   number,
   object,
   oneOf,
@@ -20,33 +23,41 @@ import {
 
 /* The study file's shape: which fields, of which kind, within which bounds. What joins elements is checked elsewhere. */
 
-const phases = expect('phases out of A, B and C, each at most once', (value) => {
-  return typeof value === 'string' && /^[ABC]{1,3}$/.test(value) && new Set(value).size === value.length;
-});
+const phaseTexts = new Set(
+  ['A', 'B', 'C', 'AB', 'BA', 'BC', 'CB', 'CA', 'AC'].concat(['ABC', 'ACB', 'BAC', 'BCA', 'CAB', 'CBA']),
+);
+const phases = expect('phases out of A, B and C, each at most once', (value) =>
+  phaseTexts.has(value as string),
+);
 
-const notZero: Check = (value, place, problems) => {
-  const { r, x } = value as Impedance;
-  if (r !== 0 || x !== 0) return;
-  problems.push({
-    pointer: pointerOf(place),
-    got: 'zero impedance',
-    expected: 'an impedance other than zero',
-  });
-};
+/** In ohms, or ohms per km: what is smaller was left over by a subtraction. */
+const smallestImpedance = 1e-12;
+
+const notZero = check(
+  (value) => {
+    const { r, x } = value as Impedance;
+    return r >= smallestImpedance || Math.abs(x) >= smallestImpedance;
+  },
+  (value, place, problems) => {
+    if (notZero.accepts(value)) return;
+    problems.add(() => ({
+      pointer: pointerOf(place),
+      got: 'zero impedance',
+      expected: 'an impedance other than zero',
+    }));
+  },
+);
 
 /** Of a line: the reactance may be negative (star equivalents, series capacitors), the resistance not. */
 const lineImpedance = object({ r: notNegative, x: number }, {}, notZero);
 const impedance = object({ r: notNegative, x: notNegative }, {}, notZero);
 const neutralImpedance = object({ r: notNegative, x: notNegative });
 
-const neutral: Check = (value, place, problems) => {
+const neutral = checkByNotes((value, place, problems) => {
   if (value === 'solid' || value === 'ungrounded') return;
   if (typeof value === 'object' && value !== null) neutralImpedance(value, place, problems);
-  else {
-    const expected = '"solid", "ungrounded" or an impedance';
-    problems.push({ pointer: pointerOf(place), got: describeValue(value), expected });
-  }
-};
+  else noteProblem(problems, place, value, '"solid", "ungrounded" or an impedance');
+});
 
 /** Star to star and delta to delta keep the clock at 0; a star on one side alone turns it to 1 or 11. */
 const connection = matching(
@@ -56,14 +67,10 @@ const connection = matching(
 
 const strength = object({ z1: impedance }, { z2: impedance, z0: impedance });
 
-const neutralOfMachine: Check = (value, place, problems) => {
+const neutralOfMachine = checkByNotes((value, place, problems) => {
   const machine = value as Machine;
-  const note = (key: string, expected: string) =>
-    problems.push({
-      pointer: pointerOf({ parent: place, key }),
-      got: describeValue(machine[key as keyof Machine]),
-      expected,
-    });
+  const note = (key: 'neutral' | 'x0Pu', expected: string) =>
+    noteProblem(problems, { parent: place, key }, machine[key], expected);
   if (machine.kind === 'induction') {
     if ((machine.neutral ?? 'ungrounded') !== 'ungrounded')
       note('neutral', 'an induction machine to be "ungrounded"');
@@ -73,7 +80,30 @@ const neutralOfMachine: Check = (value, place, problems) => {
   else if (machine.neutral !== 'ungrounded' && machine.x0Pu === undefined) {
     note('x0Pu', 'the zero-sequence reactance, since the neutral is grounded');
   }
-};
+});
+
+/** Motors are three-phase machines. */
+const motorsOfLoad = check(
+  (value) => {
+    const { motorFraction, phases: there } = value as Load;
+    return !motorFraction || there.length === 3;
+  },
+  (value, place, problems) => {
+    if (motorsOfLoad.accepts(value)) return;
+    const { motorFraction } = value as Load;
+    const expected = 'no motors in a load without three phases';
+    noteProblem(problems, { parent: place, key: 'motorFraction' }, motorFraction, expected);
+  },
+);
+
+const options = object(
+  {},
+  {
+    method: oneOf('prefault', 'iec60909'),
+    lowVoltageTolerancePercent: expect('6 or 10', (value) => value === 6 || value === 10),
+    motorLoad: truth,
+  },
+);
 
 const companion = { with: name };
 const circuit = { circuit: name };
@@ -83,14 +113,22 @@ const node = object(
   { position: pair(between(-180, 180), between(-90, 90)), ...companion },
 );
 
+const lineFields = object(
+  { id: name, from: name, to: name, phases, km: positive },
+  { z1: lineImpedance, z0: lineImpedance, construction: name, ampacityA: positive, ...circuit, ...companion },
+);
+
+const line = check(
+  (value) => lineFields.accepts(value) && impedanceOrConstruction.accepts(value),
+  (value, place, problems) => {
+    lineFields(value, place, problems);
+    impedanceOrConstruction(value, place, problems);
+  },
+);
+
 const elementLists = {
   sources: listOf(object({ id: name, node: name, max: strength }, { min: strength })),
-  lines: listOf(
-    object(
-      { id: name, from: name, to: name, phases, km: positive, z1: lineImpedance, z0: lineImpedance },
-      { ampacityA: positive, ...circuit, ...companion },
-    ),
-  ),
+  lines: listOf(line),
   transformers: listOf(
     object(
       {
@@ -107,6 +145,8 @@ const elementLists = {
         ratedKvTo: positive,
         neutralFrom: neutral,
         neutralTo: neutral,
+        unitMachine: name,
+        onLoadTapChanger: truth,
         ...circuit,
         ...companion,
       },
@@ -123,7 +163,15 @@ const elementLists = {
         kva: positive,
         xSubtransientPu: positive,
       },
-      { rPu: notNegative, x2Pu: positive, x0Pu: positive, neutral, exportKw: notNegative },
+      {
+        rPu: notNegative,
+        x2Pu: positive,
+        x0Pu: positive,
+        neutral,
+        ratedKv: positive,
+        ratedPowerFactor: between(0, 1),
+        exportKw: notNegative,
+      },
       neutralOfMachine,
     ),
   ),
@@ -143,7 +191,13 @@ const elementLists = {
   loads: listOf(
     object(
       { id: name, node: name, phases, kw: notNegative, kvar: number },
-      { minimumKw: notNegative, ...companion },
+      {
+        minimumKw: notNegative,
+        motorFraction: between(0, 1),
+        motorLockedRotorPu: positive,
+        ...companion,
+      },
+      motorsOfLoad,
     ),
   ),
   devices: listOf(
@@ -174,6 +228,7 @@ const feeder = object(
   { nodes: listOf(node, 1) },
   {
     ...elementLists,
+    ...constructionLists,
     sections: listOf(object({ id: name, device: name }, loadFigures)),
     circuits: listOf(object({ id: name }, { lineType: oneOf('three-wire', 'four-wire') })),
   },
@@ -190,21 +245,16 @@ export const checkStudyShape = object(
     prefaultFactor: object({ max: positive, min: positive }),
     feeder,
   },
-  { name: text, minimumFaultOhm: notNegative, project, options: object({}, { method: oneOf('prefault') }) },
+  { name: text, minimumFaultOhm: notNegative, project, options },
 );
 
 /** A pair such as [lng, lat]. */
 function pair(first: Check, second: Check): Check {
-  return (value, place, problems) => {
-    if (!Array.isArray(value) || value.length !== 2) {
-      problems.push({
-        pointer: pointerOf(place),
-        got: describeValue(value),
-        expected: 'a list of two numbers',
-      });
-      return;
-    }
+  const isPair = (value: unknown): value is unknown[] => Array.isArray(value) && value.length === 2;
+  const accepts = (value: unknown) => isPair(value) && first.accepts(value[0]) && second.accepts(value[1]);
+  return check(accepts, (value, place, problems) => {
+    if (!isPair(value)) return noteProblem(problems, place, value, 'a list of two numbers');
     first(value[0], { parent: place, key: 0 }, problems);
     second(value[1], { parent: place, key: 1 }, problems);
-  };
+  });
 }

@@ -1,22 +1,35 @@
 import type { CaseChoice, Model } from './case.ts';
-import { allPhases, isPresent } from './case.ts';
-import type { Graph } from './graph.ts';
-import { DisjointSets, buildGraph } from './graph.ts';
+import type { ComplexArray } from './complex.ts';
+import { complexArray } from './complex.ts';
+import type { JoinedNodes } from './joined-nodes.ts';
+import { joinSwitchedNodes } from './joined-nodes.ts';
+import type { Mesh } from './mesh.ts';
+import { traceMesh, withOtherImpedances } from './mesh.ts';
+import type { TakenOff } from './trees.ts';
+import { takeTreesOff } from './trees.ts';
+import type { Wiring } from './wiring.ts';
+import { companionFlag, ofProjectFlag, wiringOf } from './wiring.ts';
 
 /* What is joined to what in one case: buses, the branches of the core between them, and the laterals. */
 
 export type Topology = {
-  /** By node; -1 on a lateral or absent. */
+  /** By node; -1 on a lateral or absent. The mesh has the first numbers, and a bus's parent a smaller one than it has. */
   readonly busOf: Int32Array;
   readonly busCount: number;
   /** Indices of the model's branches that the core has. */
-  readonly coreBranches: readonly number[];
-  /** The core: its edges count along `coreBranches`. */
-  readonly core: Graph;
+  readonly coreBranches: Int32Array;
+  readonly meshCount: number;
+  readonly mesh: Mesh;
+  /** By bus: the next bus towards the mesh, and the branch there; -1 in the mesh. */
+  readonly parent: Int32Array;
+  readonly parentBranch: Int32Array;
+  /** By bus: impedance of that branch in the positive, the negative and the zero sequence. */
+  readonly z1: ComplexArray;
+  readonly z0: ComplexArray;
+  /** As `parent`, also -1 where the zero sequence does not go through. */
+  readonly zeroParent: Int32Array;
   /** By bus: by how many times 30° it lags the first bus of its island. */
   readonly clockHours: Int32Array;
-  /** By bus: a number that all buses of one island share. */
-  readonly islandOf: Int32Array;
   readonly laterals: Laterals;
 };
 
@@ -32,133 +45,184 @@ export type Laterals = {
   readonly phases: Uint8Array;
 };
 
-/** Finds what is joined to what; time and memory are linear in the model. */
+const known = new WeakMap<Model, Map<number, Topology>>();
+
+/** Finds what is joined to what; cases that have the same branches and switches share it. */
+export function shareTopology(model: Model, choice: CaseChoice): Topology {
+  if (choice.opened || choice.out || choice.switches) return traceTopology(model, choice);
+  const wanted = (choice.project ? 0 : ofProjectFlag) | (choice.companions ? 0 : companionFlag);
+  const absent = wanted & wiringOf(model).flags;
+  let topologies = known.get(model);
+  if (!topologies) known.set(model, (topologies = new Map()));
+  let topology = topologies.get(absent);
+  if (!topology) topologies.set(absent, (topology = traceTopology(model, choice)));
+  return topology;
+}
+
+/** Finds what is joined to what; time and memory are linear in the model but for the mesh's elimination order. */
 export function traceTopology(model: Model, choice: CaseChoice): Topology {
-  const groupOf = mergeSwitchedNodes(model, choice);
-  const { busOf, busCount } = numberBuses(model, groupOf);
-  const coreBranches: number[] = [];
-  const lateralBranches: number[] = [];
-  model.branches.forEach((branch, index) => {
-    if (!isPresent(choice, branch) || choice.opened?.branch === index) return;
-    if (busOf[branch.from] === -1 || busOf[branch.to] === -1) lateralBranches.push(index);
-    else coreBranches.push(index);
-  });
-  const core = buildGraph(
-    busCount,
-    coreBranches.map((index) => busOf[model.branches[index]!.from]!),
-    coreBranches.map((index) => busOf[model.branches[index]!.to]!),
-  );
+  const wiring = wiringOf(model);
+  const joined = joinSwitchedNodes(model, wiring, choice);
+  const taken = takeTreesOff(joined, wiring.isThreePhase);
+  const { busOfGroup, busCount, meshCount } = numberBuses(joined, wiring, taken);
+  const { parent, parentBranch } = hangBuses(taken, busOfGroup, busCount);
+  const mesh = traceMesh(joined, taken, wiring, busOfGroup, meshCount);
+  const busOf = ofNodes(joined, busOfGroup);
   return {
     busOf,
     busCount,
-    coreBranches,
-    core,
-    ...walkIslands(model, coreBranches, core, busOf),
-    laterals: traceLaterals(model, choice, groupOf, busOf, lateralBranches),
+    meshCount,
+    coreBranches: listCoreBranches(joined, wiring, busOfGroup),
+    mesh,
+    parent,
+    parentBranch,
+    ...gatherImpedances(wiring, parent, parentBranch, meshCount),
+    clockHours: addUpClockHours(wiring, { busOf, mesh, meshCount, parent, parentBranch }),
+    laterals: listLaterals(model, joined, taken, busOfGroup),
   };
 }
 
-/** By node the group of nodes that closed switches make one, -1 for absent nodes. */
-function mergeSwitchedNodes(model: Model, choice: CaseChoice): Int32Array {
-  const { nodes, switches } = model;
-  const groups = new DisjointSets(nodes.length);
-  for (const link of switches) {
-    // Between nodes of unlike phases a switch is a lateral without length.
-    const [from, to] = [nodes[link.from]!, nodes[link.to]!];
-    if (!isClosed(link, choice) || !isPresent(choice, from) || !isPresent(choice, to)) continue;
-    if (from.phases === to.phases) groups.join(link.from, link.to);
-  }
-  return Int32Array.from(nodes, (node, index) => (isPresent(choice, node) ? groups.find(index) : -1));
+/** Gives the topology of a case for a model that differs from the case's own in its impedances alone. */
+export function topologyAlike(topology: Topology, model: Model): Topology {
+  const wiring = wiringOf(model);
+  const { parent, parentBranch, meshCount, mesh } = topology;
+  return {
+    ...topology,
+    ...gatherImpedances(wiring, parent, parentBranch, meshCount),
+    mesh: withOtherImpedances(mesh, wiring),
+  };
 }
 
-function isClosed(link: Model['switches'][number], choice: CaseChoice): boolean {
-  return link.closed && isPresent(choice, link);
-}
-
-function numberBuses(model: Model, groupOf: Int32Array) {
+/** The mesh in the order of the file, then the trees from the mesh outwards. */
+function numberBuses({ groupOf }: JoinedNodes, { isThreePhase }: Wiring, taken: TakenOff) {
   const busOfGroup = new Int32Array(groupOf.length).fill(-1);
-  const busOf = new Int32Array(groupOf.length).fill(-1);
   let busCount = 0;
-  model.nodes.forEach((node, index) => {
-    const group = groupOf[index]!;
-    if (group === -1 || node.phases !== allPhases) return;
-    if (busOfGroup[group] === -1) busOfGroup[group] = busCount++;
-    busOf[index] = busOfGroup[group]!;
-  });
-  return { busOf, busCount };
+  for (let node = 0; node < groupOf.length; node++) {
+    if (groupOf[node] === node && isThreePhase[node] && taken.parent[node] === -1)
+      busOfGroup[node] = busCount++;
+  }
+  const meshCount = busCount;
+  for (let k = taken.count - 1; k >= taken.lateralCount; k--) busOfGroup[taken.order[k]!] = busCount++;
+  return { busOfGroup, busCount, meshCount };
 }
 
-function walkIslands(model: Model, coreBranches: readonly number[], core: Graph, busOf: Int32Array) {
-  const busCount = core.start.length - 1;
-  const clockHours = new Int32Array(busCount);
-  const islandOf = new Int32Array(busCount).fill(-1);
-  const queue = new Int32Array(busCount);
-  for (let first = 0; first < busCount; first++) {
-    if (islandOf[first] !== -1) continue;
-    islandOf[first] = first;
+function hangBuses(taken: TakenOff, busOfGroup: Int32Array, busCount: number) {
+  const parent = new Int32Array(busCount).fill(-1);
+  const parentBranch = new Int32Array(busCount).fill(-1);
+  for (let k = taken.lateralCount; k < taken.count; k++) {
+    const group = taken.order[k]!;
+    const bus = busOfGroup[group]!;
+    parent[bus] = busOfGroup[taken.parent[group]!]!;
+    parentBranch[bus] = taken.parentEdge[group]!;
+  }
+  return { parent, parentBranch };
+}
+
+function ofNodes({ groupOf }: JoinedNodes, ofGroup: Int32Array): Int32Array {
+  const values = new Int32Array(groupOf.length);
+  for (let node = 0; node < values.length; node++) {
+    const group = groupOf[node]!;
+    values[node] = group === -1 ? -1 : ofGroup[group]!;
+  }
+  return values;
+}
+
+function listCoreBranches({ from, to }: JoinedNodes, wiring: Wiring, busOfGroup: Int32Array): Int32Array {
+  const branches = new Int32Array(wiring.from.length);
+  let count = 0;
+  for (let edge = 0; edge < branches.length; edge++) {
+    if (from[edge] !== -1 && busOfGroup[from[edge]!] !== -1 && busOfGroup[to[edge]!] !== -1)
+      branches[count++] = edge;
+  }
+  return branches.subarray(0, count);
+}
+
+function gatherImpedances(
+  wiring: Wiring,
+  parent: Int32Array,
+  parentBranch: Int32Array,
+  meshCount: number,
+): Pick<Topology, 'z1' | 'z0' | 'zeroParent'> {
+  const busCount = parent.length;
+  const z1 = complexArray(busCount);
+  const z0 = complexArray(busCount);
+  const zeroParent = wiring.allGoThrough ? parent : parent.slice();
+  for (let bus = meshCount; bus < busCount; bus++) {
+    const branch = parentBranch[bus]!;
+    z1.re[bus] = wiring.z1Re[branch]!;
+    z1.im[bus] = wiring.z1Im[branch]!;
+    z0.re[bus] = wiring.z0Re[branch]!;
+    z0.im[bus] = wiring.z0Im[branch]!;
+    if (!wiring.zeroGoesThrough[branch]) zeroParent[bus] = -1;
+  }
+  return { z1, z0, zeroParent };
+}
+
+function addUpClockHours(
+  { anyShift, from, clockHours: lagOf }: Wiring,
+  {
+    busOf,
+    mesh,
+    meshCount,
+    parent,
+    parentBranch,
+  }: Pick<Topology, 'busOf' | 'mesh' | 'meshCount' | 'parent' | 'parentBranch'>,
+): Int32Array {
+  const hours = new Int32Array(parent.length);
+  if (!anyShift) return hours;
+  const lagFrom = (u: number, branch: number) =>
+    busOf[from[branch]!] === u ? lagOf[branch]! : -lagOf[branch]!;
+  const { graph, branches } = mesh;
+  const seen = new Uint8Array(meshCount);
+  const queue = new Int32Array(meshCount);
+  for (let first = 0; first < meshCount; first++) {
+    if (seen[first]) continue;
+    seen[first] = 1;
     queue[0] = first;
     for (let head = 0, tail = 1; head < tail; head++) {
       const u = queue[head]!;
-      for (let p = core.start[u]!; p < core.start[u + 1]!; p++) {
-        const v = core.neighbour[p]!;
-        if (islandOf[v] !== -1) continue;
-        const branch = model.branches[coreBranches[core.edge[p]!]!]!;
-        islandOf[v] = first;
-        clockHours[v] = clockHours[u]! + (busOf[branch.from] === u ? branch.clockHour : -branch.clockHour);
+      for (let p = graph.start[u]!; p < graph.start[u + 1]!; p++) {
+        const v = graph.neighbour[p]!;
+        if (seen[v]) continue;
+        seen[v] = 1;
+        hours[v] = hours[u]! + lagFrom(u, branches[graph.edge[p]!]!);
         queue[tail++] = v;
       }
     }
   }
-  return { clockHours, islandOf };
+  for (let bus = meshCount; bus < parent.length; bus++) {
+    hours[bus] = hours[parent[bus]!]! + lagFrom(parent[bus]!, parentBranch[bus]!);
+  }
+  return hours;
 }
 
-function traceLaterals(
-  model: Model,
-  choice: CaseChoice,
-  groupOf: Int32Array,
-  busOf: Int32Array,
-  lateralBranches: readonly number[],
-): Laterals {
-  const { nodes, switches, branches } = model;
-  const from: number[] = [];
-  const to: number[] = [];
-  const branchOfEdge: number[] = [];
-  const addEdge = (u: number, v: number, branch: number) => {
-    if (groupOf[u] === -1 || groupOf[v] === -1) return;
-    from.push(groupOf[u]!);
-    to.push(groupOf[v]!);
-    branchOfEdge.push(branch);
-  };
-  for (const index of lateralBranches) addEdge(branches[index]!.from, branches[index]!.to, index);
-  for (const link of switches) if (isClosed(link, choice)) addEdge(link.from, link.to, -1);
-  const graph = buildGraph(nodes.length, from, to);
-
-  const spotOfGroup = new Int32Array(nodes.length).fill(-1);
-  const groups: number[] = [];
-  const parent: number[] = [];
-  const branch: number[] = [];
-  const tap: number[] = [];
-  const visit = (group: number, parentSpot: number, bus: number) => {
-    for (let p = graph.start[group]!; p < graph.start[group + 1]!; p++) {
-      const next = graph.neighbour[p]!;
-      if (busOf[next] !== -1 || spotOfGroup[next] !== -1) continue;
-      spotOfGroup[next] = groups.length;
-      groups.push(next);
-      parent.push(parentSpot);
-      branch.push(branchOfEdge[graph.edge[p]!]!);
-      tap.push(bus);
-    }
-  };
-  // A group is named by one of its nodes, so its bus and phases are that node's.
-  for (let node = 0; node < nodes.length; node++) {
-    if (groupOf[node] === node && busOf[node] !== -1) visit(node, -1, busOf[node]!);
+function listLaterals(model: Model, joined: JoinedNodes, taken: TakenOff, busOfGroup: Int32Array): Laterals {
+  const { lateralCount } = taken;
+  const spotOfGroup = new Int32Array(joined.groupOf.length).fill(-1);
+  const parent = new Int32Array(lateralCount);
+  const branch = new Int32Array(lateralCount);
+  const tap = new Int32Array(lateralCount);
+  const phases = new Uint8Array(lateralCount);
+  let count = 0;
+  for (let k = lateralCount - 1; k >= 0; k--) {
+    const group = taken.order[k]!;
+    const above = taken.parent[group]!;
+    const parentSpot = spotOfGroup[above]!;
+    // What hangs from neither the core nor a spot is cut off.
+    if (busOfGroup[above] === -1 && parentSpot === -1) continue;
+    const spot = count++;
+    spotOfGroup[group] = spot;
+    parent[spot] = parentSpot;
+    tap[spot] = parentSpot === -1 ? busOfGroup[above]! : tap[parentSpot]!;
+    const edge = taken.parentEdge[group]!;
+    branch[spot] = edge < model.branches.length ? edge : -1;
+    phases[spot] = model.nodes[group]!.phases;
   }
-  for (let spot = 0; spot < groups.length; spot++) visit(groups[spot]!, spot, tap[spot]!);
   return {
-    spotOf: Int32Array.from(groupOf, (group) => (group === -1 ? -1 : spotOfGroup[group]!)),
-    parent: Int32Array.from(parent),
-    branch: Int32Array.from(branch),
-    tap: Int32Array.from(tap),
-    phases: Uint8Array.from(groups, (group) => nodes[group]!.phases),
+    spotOf: ofNodes(joined, spotOfGroup),
+    parent: parent.subarray(0, count),
+    branch: branch.subarray(0, count),
+    tap: tap.subarray(0, count),
+    phases: phases.subarray(0, count),
   };
 }

@@ -15,7 +15,7 @@ export function transformerBranch(
   kvFrom: number,
   kvTo: number,
 ): Omit<Branch, 'from' | 'to' | keyof Belonging> {
-  const { id, kva, connection, impedancePercent, xr } = transformer;
+  const { kva, connection, impedancePercent, xr } = transformer;
   // The percentage is on the rated voltage, which need not be the node's nominal one.
   const ratio = (transformer.ratedKvTo ?? kvTo) / kvTo;
   const size = (impedancePercent / 100) * ratio * ratio * ((baseMva * 1000) / kva);
@@ -24,14 +24,18 @@ export function transformerBranch(
   const earthFrom = earthing(transformer.neutralFrom, baseOhms(baseMva, kvFrom));
   const earthTo = earthing(transformer.neutralTo, baseOhms(baseMva, kvTo));
   return {
-    id,
     phases: allPhases,
     z1,
     zeroSequence: zeroSequenceOf(connection, z0, earthFrom, earthTo),
     self: zero,
     mutual: zero,
-    clockHour: Number(/\d+$/.exec(connection)![0]),
+    clockHour: clockHourOf(connection),
   };
+}
+
+/** By how many times 30° `to` lags `from`: the number that a connection such as "Dyn11" ends with. */
+export function clockHourOf(connection: string): number {
+  return Number(/\d+$/.exec(connection)![0]);
 }
 
 /*

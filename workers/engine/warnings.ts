@@ -17,8 +17,8 @@ export function listWarnings(study: Study, states: Record<StateName, SolvedCase>
       const { id } = model.nodes[node]!;
       warnings.add(`A one-phase inverter at ${id} has no way back for its current and is left out.`);
     }
-    for (const [name, { inverse }] of Object.entries(networks)) {
-      for (const bus of inverse.factors.weakBuses) {
+    for (const [name, { weakBuses }] of Object.entries(networks)) {
+      for (const bus of weakBuses) {
         const { id } = model.nodes[topology.busOf.indexOf(bus)]!;
         warnings.add(
           `The ${name} sequence nearly resonates at ${id}: currents there are not to be relied on.`,

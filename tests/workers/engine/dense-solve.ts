@@ -16,7 +16,7 @@ export function denseImpedance(study: Study, sequence: 'z1' | 'z0', withMachines
   const addTo = (i: number, j: number, value: Complex) => (y[i]![j] = add(y[i]![j]!, value));
   for (const line of lines) {
     const [i, j] = [indexOf.get(line.from)!, indexOf.get(line.to)!];
-    const z = { re: line[sequence].r * line.km, im: line[sequence].x * line.km };
+    const z = { re: line[sequence]!.r * line.km, im: line[sequence]!.x * line.km };
     const admittance = divide(one, z);
     addTo(i, i, admittance);
     addTo(j, j, admittance);

@@ -161,7 +161,7 @@ function withoutResistance(study: Study): Study {
     ...study,
     feeder: {
       ...study.feeder,
-      lines: study.feeder.lines!.map((line) => ({ ...line, z1: reactive(line.z1), z0: reactive(line.z0) })),
+      lines: study.feeder.lines!.map((line) => ({ ...line, z1: reactive(line.z1!), z0: reactive(line.z0!) })),
       sources: study.feeder.sources!.map(({ max, ...source }) => ({
         ...source,
         max: { z1: reactive(max.z1), z0: reactive(max.z0!) },

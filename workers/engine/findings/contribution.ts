@@ -18,10 +18,13 @@ type Currents = Pick<NodeState, 'threePhase' | 'lineGround'>;
  * primary node on the source side; the larger of the phasor sum and the sum of magnitudes decides.
  */
 export function answerContribution(screening: Screening): Finding[] {
-  const { model, states, upstream, poi } = screening;
+  const { model, solver, upstream, poi } = screening;
   const node = upstream.path.find((index) => model.nodes[index]!.kv > primaryAboveKv) ?? poi;
-  const element = model.nodes[node]!.id;
-  const none = reportNode(states.none, node);
+  const { id: element, kv } = model.nodes[node]!;
+  const [stateNone, stateBefore, stateAfter] = (['none', 'before', 'after'] as const).map((state) =>
+    solver.solve(state, kv),
+  ) as [SolvedCase, SolvedCase, SolvedCase];
+  const none = reportNode(stateNone, node);
   const base = Math.max(none.threePhase ?? 0, none.lineGround ?? 0);
   if (base === 0) {
     return [
@@ -29,12 +32,12 @@ export function answerContribution(screening: Screening): Finding[] {
     ];
   }
   const added = (solved: SolvedCase) => largestIncrease(solved, node, none) / base;
-  const after = added(states.after);
+  const after = added(stateAfter);
   const finding = judge(screening, 'contribution', {
     element,
     value: after * 100,
-    before: added(states.before) * 100,
-    note: describe(none, reportNode(states.after, node)),
+    before: added(stateBefore) * 100,
+    note: describe(none, reportNode(stateAfter, node)),
   });
   if (finding.verdict === 'within' && lacksGroundSource(screening)) {
     const note = 'A source gives no zero-sequence impedance, so its ground-fault current is not known.';

@@ -2,18 +2,21 @@ import type { Finding } from '../../../shared/schemas/findings.ts';
 import type { Grounding } from '../../../shared/schemas/study-result.ts';
 import type { CaseChoice, Opening } from '../case.ts';
 import { judgeGrounding } from '../grounding.ts';
-import { findFaultPoint, solveCase } from '../solve-case.ts';
+import { openingsSeenFrom } from '../one-opening.ts';
+import { solveCase } from '../solve-case.ts';
 import { answer, judge } from './judge.ts';
 import type { Screening } from './screening.ts';
-import { findCutOff, listSectionalizing } from './upstream.ts';
+import { listSectionalizing, traceCuts } from './upstream.ts';
 
-/** What one device cuts off, by node. */
-type Cut = { device: string; opening: Opening; area: Uint8Array };
+/** An opening that leaves the point of interconnection without any source, and whether it leaves it machines. */
+type Cut = { device: string; opening: Opening; keepsMachine: boolean; keepsFeederMachine: boolean };
 
 type IslandCase = { device: string; who: string; grounding: Grounding };
 
 const noMachines =
   'No synchronous or induction machine stays behind. What inverters alone do is a separate question, not asked yet.';
+
+const allOfThem = 'all machines and ground sources';
 
 /**
  * Do healthy phases stay in bounds when the utility is gone and a line touches ground?
@@ -33,10 +36,17 @@ export function answerEffectiveGrounding(screening: Screening): Finding[] {
     return [answer(screening, 'effective-grounding', 'needs-data', { note })];
   }
   const worst = findWorst(
-    cuts.flatMap((cut) => [...projectAlone(screening, cut), ...everyone(screening, cut, true)]),
+    interleave(
+      judgeIslands(screening, cuts, "the project's machines alone", {
+        machines: 'project',
+        groundingBanks: 'project',
+        companions: false,
+      }),
+      judgeIslands(screening, cuts, allOfThem, {}),
+    ),
   );
   if (!worst) return [answer(screening, 'effective-grounding', 'not-applicable', { note: noMachines })];
-  const before = findWorst(cuts.flatMap((cut) => everyone(screening, cut, false)));
+  const before = findWorst(interleave(judgeIslands(screening, cuts, allOfThem, { project: false })));
   const atPrefault = ruleSet.rules['effective-grounding'].prefaultFactor ?? 1;
   return [
     judge(screening, 'effective-grounding', {
@@ -48,29 +58,35 @@ export function answerEffectiveGrounding(screening: Screening): Finding[] {
   ];
 }
 
-function listCuts({ study, model, upstream, poi }: Screening): Cut[] {
-  return listSectionalizing(study, model, upstream).flatMap(({ device, opening }) => {
-    const area = findCutOff(upstream, poi, opening.branch);
-    return area ? [{ device: device.id, opening, area }] : [];
-  });
+function listCuts({ study, model, upstream }: Screening): Cut[] {
+  const { isCut, since } = traceCuts(upstream);
+  const nearest = (machines: readonly { node: number }[]) =>
+    machines.reduce(
+      (first, { node }) => (since[node] === -1 ? first : Math.min(first, since[node]!)),
+      Infinity,
+    );
+  const nearestOfAll = nearest(model.machines);
+  const nearestOfFeeder = nearest(model.machines.filter(({ ofProject }) => !ofProject));
+  return listSectionalizing(study, model, upstream)
+    .filter(({ place }) => isCut[place])
+    .map(({ device, opening, place }) => ({
+      device: device.id,
+      opening,
+      keepsMachine: nearestOfAll <= place,
+      keepsFeederMachine: nearestOfFeeder <= place,
+    }));
 }
 
-function projectAlone(screening: Screening, cut: Cut): IslandCase[] {
-  const choice: Partial<CaseChoice> = { machines: 'project', groundingBanks: 'project', companions: false };
-  return solveIsland(screening, cut, "the project's machines alone", choice);
-}
-
-function everyone(screening: Screening, cut: Cut, project: boolean): IslandCase[] {
-  return solveIsland(screening, cut, 'all machines and ground sources', { project });
-}
-
-/** Judges what a cut leaves at the point of interconnection; nothing where no machine stays there. */
-function solveIsland(
+/**
+ * Judges what each cut leaves at the point of interconnection, nothing where no machine stays there. The network is solved
+ * once, with the sources out; each cut is then one branch opened in it.
+ */
+function judgeIslands(
   { model, poi }: Screening,
-  cut: Cut,
+  cuts: readonly Cut[],
   who: string,
   differs: Partial<CaseChoice>,
-): IslandCase[] {
+): (IslandCase | undefined)[] {
   const choice: CaseChoice = {
     sources: 'out',
     prefaultFactor: 1,
@@ -79,14 +95,20 @@ function solveIsland(
     groundingBanks: 'all',
     project: true,
     companions: true,
-    opened: cut.opening,
     ...differs,
   };
-  const staysIn = model.machines.some(
-    ({ node, ofProject }) => cut.area[node] && (choice.project || !ofProject),
-  );
-  const point = staysIn ? findFaultPoint(solveCase(model, choice), poi) : undefined;
-  return point ? [{ device: cut.device, who, grounding: judgeGrounding(point.z1, point.z2, point.z0) }] : [];
+  const solved = solveCase(model, choice);
+  const findPoint = openingsSeenFrom(solved, poi);
+  return cuts.map((cut) => {
+    const staysIn = choice.project ? cut.keepsMachine : cut.keepsFeederMachine;
+    const point = staysIn ? findPoint(cut.opening) : undefined;
+    return point && { device: cut.device, who, grounding: judgeGrounding(point.z1, point.z2, point.z0) };
+  });
+}
+
+/** Cut by cut, the cases of each list. */
+function interleave(...lists: readonly (readonly (IslandCase | undefined)[])[]): IslandCase[] {
+  return lists[0]!.flatMap((_, place) => lists.flatMap((list) => list[place] ?? []));
 }
 
 /** The first of equals, so that the device nearest the source is named; rounding does not make a difference. */

@@ -1,8 +1,12 @@
 import type { Finding } from '../../../shared/schemas/findings.ts';
 import type { Device } from '../../../shared/schemas/study.ts';
-import { findDeviceDuty } from '../devices.ts';
+import type { Model } from '../case.ts';
+import type { CountedFault } from '../device-asymmetry.ts';
+import { findCountedFault } from '../device-asymmetry.ts';
+import { findTestXr, isAsymmetrical } from '../rating-basis.ts';
 import type { SolvedCase } from '../solve-case.ts';
 import { solveCase } from '../solve-case.ts';
+import type { DutyState } from '../state-solver.ts';
 import { boundInverterRaise, findInverterRaise } from './inverter-raise.ts';
 import { answer, findBrokenLimit, judge } from './judge.ts';
 import type { Screening } from './screening.ts';
@@ -10,10 +14,14 @@ import { lacksGroundSource } from './screening.ts';
 
 type Rated = Device & { interruptingKa: number };
 
+/** The fault that counts most against a rating, inverter currents added, and that in percent of the rating. */
+type Loading = CountedFault & { percent: number };
+
 /**
  * Does everything that interrupts faults keep its margin?
- * The whole fault current at each device over its rating, with the project, and without it where that is more. One finding
- * for the worst device, one for each further device outside, one for each without a rating.
+ * The whole fault current at each device over its rating, with the project, and without it where that is more; above the
+ * X/R that the rating was tested at it counts for more than it is. One finding for the worst device, one for each further
+ * device outside, one for each without a rating.
  */
 export function answerInterruptingDuty(screening: Screening): Finding[] {
   const devices = [...(screening.study.feeder.devices ?? []), ...(screening.project.devices ?? [])];
@@ -38,12 +46,11 @@ export function answerInterruptingDuty(screening: Screening): Finding[] {
 const mostExact = 64;
 
 function judgeRated(screening: Screening, devices: readonly Rated[]): Finding[] {
-  const { states, ruleSet } = screening;
-  const rule = ruleSet.rules['interrupting-duty'];
-  const after = loadingsIn(states.after);
-  const before = loadingsIn(states.before);
+  const rule = screening.ruleSet.rules['interrupting-duty'];
+  const after = loadingsIn(screening, 'after');
+  const before = loadingsIn(screening, 'before');
   const bounded = devices
-    .map((device) => ({ device, bound: after.bound(device) }))
+    .map((device) => ({ device, bound: after.bound(device).percent }))
     .sort((p, q) => q.bound - p.bound);
 
   const findings: Finding[] = [];
@@ -65,18 +72,21 @@ function judgeRated(screening: Screening, devices: readonly Rated[]): Finding[] 
 function judgeDevice(
   screening: Screening,
   device: Rated,
-  { after, before }: { after: number; before: number | null },
+  { after, before }: { after: Loading; before: Loading | null },
   measure: 'exact' | 'bound',
 ): Finding {
-  const value = Math.max(after, before ?? 0);
-  const amperes = ((value / 100) * device.interruptingKa * 1000).toFixed(0);
-  const notes = [`${amperes} A available against a rating of ${device.interruptingKa} kA.`];
-  if (value > after) notes.push('It is more without the project, and that decides.');
+  const decisive = before && before.percent > after.percent ? before : after;
+  const notes = [
+    `${decisive.amperes.toFixed(0)} A available against a rating of ${device.interruptingKa} kA.`,
+    ...describeAsymmetry(screening, device, decisive),
+  ];
+  if (decisive === before) notes.push('It is more without the project, and that decides.');
+  if (screening.study.options?.motorLoad) notes.push('Motors in the load are counted.');
   if (measure === 'bound') notes.push('Inverter currents are counted at a bound of their sum.');
   const finding = judge(screening, 'interrupting-duty', {
     element: device.id,
-    value,
-    before,
+    value: decisive.percent,
+    before: before?.percent ?? null,
     note: notes.join(' '),
   });
   if (finding.verdict !== 'within' || !lacksGroundSource(screening)) return finding;
@@ -84,19 +94,57 @@ function judgeDevice(
   return answer(screening, 'interrupting-duty', 'needs-data', { element: device.id, note });
 }
 
+function describeAsymmetry({ model, study }: Screening, device: Rated, { factor, xr }: Loading): string[] {
+  const times = factor.toFixed(3);
+  const here = xr >= 1000 ? 'X/R over 1000' : `X/R ${xr.toFixed(1)}`;
+  if (isAsymmetrical(device)) {
+    return [`The rating is asymmetrical: at ${here} the current counts ${times} times.`];
+  }
+  const { kv } = endOf(model, device);
+  const test = findTestXr(device, { kv, frequencyHz: study.frequencyHz });
+  const notes: string[] = [];
+  if (!test.isGiven) {
+    notes.push(`Its test X/R is not given: ${test.xr}, the lowest standard value for its kind, is taken.`);
+  }
+  if (factor > 1) {
+    notes.push(`${here} is above the test X/R of ${test.xr}: the current counts ${times} times.`);
+  }
+  return notes;
+}
+
+function endOf(model: Model, device: Device) {
+  const node = model.branches[model.branchIndex.get(device.branch)!]![device.end];
+  return { node, kv: model.nodes[node]!.kv };
+}
+
 /**
- * Measures a device in percent of its rating: the larger of the phasor result and the current without inverters with
- * theirs added in magnitude, or with a bound of those.
+ * Measures a device against its rating: the larger of the phasor result and the current without inverters with theirs
+ * added in magnitude, or with a bound of those.
  */
-function loadingsIn(solved: SolvedCase) {
-  const { model, choice } = solved;
-  const bare = solveCase(model, { ...choice, inverters: 'none' });
-  const boundRaise = boundInverterRaise(solved);
-  const measure = (raiseAt: (node: number) => number) => (device: Rated) => {
-    const node = model.branches[model.branchIndex.get(device.branch)!]![device.end];
-    const phasors = findDeviceDuty(solved, device).availableA;
-    const magnitudes = findDeviceDuty(bare, device).availableA * (1 + raiseAt(node));
-    return (Math.max(phasors, magnitudes) / (device.interruptingKa * 1000)) * 100;
+function loadingsIn({ model, solver }: Screening, state: DutyState) {
+  const prepared = new Map<SolvedCase, ReturnType<typeof prepare>>();
+  const prepare = (solved: SolvedCase) => ({
+    bare: solveCase(solved.model, { ...solved.choice, inverters: 'none' }),
+    boundRaise: boundInverterRaise(solved),
+  });
+  const measure = (device: Rated, kind: 'exact' | 'bound'): Loading => {
+    const { node, kv } = endOf(model, device);
+    const duty = solver.solveDuty(state, kv);
+    let ready = prepared.get(duty.solved);
+    if (!ready) prepared.set(duty.solved, (ready = prepare(duty.solved)));
+    const raise = kind === 'exact' ? findInverterRaise(duty.solved, node) : ready.boundRaise(node);
+    const phasors = findCountedFault(duty, duty.solved, device);
+    const alone = findCountedFault(duty, ready.bare, device);
+    const magnitudes = { ...alone, amperes: alone.amperes * (1 + raise) };
+    const decisive =
+      phasors.amperes * phasors.factor > magnitudes.amperes * magnitudes.factor ? phasors : magnitudes;
+    return {
+      ...decisive,
+      percent: ((decisive.amperes * decisive.factor) / (device.interruptingKa * 1000)) * 100,
+    };
   };
-  return { exact: measure((node) => findInverterRaise(solved, node)), bound: measure(boundRaise) };
+  return {
+    exact: (device: Rated) => measure(device, 'exact'),
+    bound: (device: Rated) => measure(device, 'bound'),
+  };
 }

@@ -2,10 +2,11 @@ import type { CurrentSource } from '../case.ts';
 import { isMember, isPresent } from '../case.ts';
 import type { Complex } from '../complex.ts';
 import { at, complexArray, magnitude, multiply } from '../complex.ts';
-import { solveInPlace } from '../factorization.ts';
 import { sequencesOf } from '../open-circuit.ts';
+import { solveVoltages } from '../sequence-networks.ts';
 import type { SolvedCase } from '../solve-case.ts';
 import { busOfNode } from '../solve-case.ts';
+import { transferColumn } from '../transfers.ts';
 
 /*
  * Inverter currents added in magnitude, each scaled by |Zkm/Zkk|, as IEC 60909-0:2016 adds those of full-converter
@@ -53,7 +54,7 @@ export function boundInverterRaise(solved: SolvedCase): (node: number) => number
       const bus = busOfNode(solved, inverter.node);
       if (network.hasPath[bus]) values.re[bus]! += size;
     }
-    solveInPlace(network.inverse.factors, values);
+    solveVoltages(network, values);
     return values;
   });
   const all = taking.reduce((total, { currents }) => total + largestOf(currents), 0);
@@ -76,18 +77,12 @@ function listTakingPart({ model, choice, topology }: SolvedCase): CurrentSource[
   );
 }
 
-/** Columns of Z1, Z2 and Z0 at a bus, one solve each; the last two only where unbalanced inverters need them. */
-function transferColumns({ networks, topology, openCircuit }: SolvedCase, bus: number) {
+/** Columns of Z1, Z2 and Z0 at a bus; the last two only where unbalanced inverters need them. */
+function transferColumns({ networks, openCircuit }: SolvedCase, bus: number) {
   const wanted = openCircuit.balanced
     ? [networks.positive]
     : [networks.positive, networks.negative, networks.zero];
-  return wanted.map(({ inverse, hasPath }) => {
-    const column = complexArray(topology.busCount);
-    if (!hasPath[bus]) return column;
-    column.re[bus] = 1;
-    solveInPlace(inverse.factors, column);
-    return column;
-  });
+  return wanted.map((network) => transferColumn(network, bus));
 }
 
 function largestOf(currents: readonly Complex[]): number {

@@ -2,6 +2,7 @@ import type { RuleSet } from '../../../shared/schemas/rule-sets.ts';
 import type { Project, Study } from '../../../shared/schemas/study.ts';
 import type { Model } from '../case.ts';
 import type { SolvedCase } from '../solve-case.ts';
+import type { StateSolver } from '../state-solver.ts';
 import type { StateName } from '../states.ts';
 import type { Upstream } from './upstream.ts';
 
@@ -11,7 +12,9 @@ export type Screening = {
   project: Project;
   ruleSet: RuleSet;
   model: Model;
+  /** The states at the voltage of the point of interconnection; `solver` has them for any other. */
   states: Record<StateName, SolvedCase>;
+  solver: StateSolver;
   /** Index of the point of interconnection. */
   poi: number;
   upstream: Upstream;

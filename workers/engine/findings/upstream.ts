@@ -83,20 +83,66 @@ export function findCutOff(
   return reached;
 }
 
-/** Lists the devices that open by themselves between the sources and the node, outermost first. */
+/** What opening each branch of the path cuts off. */
+export type Cuts = {
+  /** By branch of the path: whether opening it leaves the node without any source. */
+  readonly isCut: Uint8Array;
+  /** By node: the first branch of the path whose opening cuts it off together with the path's node; -1 beyond all. */
+  readonly since: Int32Array;
+};
+
+/**
+ * Finds what stays with the path's node when its branches are opened one at a time. What one opening cuts off is part of what
+ * the next one further out does, so that a single walk outwards finds all.
+ */
+export function traceCuts({ graph, path, branches, branchOfEdge, isSource }: Upstream): Cuts {
+  const placeOf = new Map(branches.map((branch, place) => [branch, place]));
+  const isCut = new Uint8Array(branches.length);
+  const since = new Int32Array(isSource.length).fill(-1);
+  const beyond = new Int32Array(branches.length).fill(-1);
+  const queue = [path[0]!];
+  since[path[0]!] = 0;
+  let hasSource = false;
+  let furthest = -1;
+  for (let place = 0, head = 0; place < branches.length; place++) {
+    for (; head < queue.length; head++) {
+      const u = queue[head]!;
+      if (isSource[u]) hasSource = true;
+      for (let p = graph.start[u]!; p < graph.start[u + 1]!; p++) {
+        const v = graph.neighbour[p]!;
+        const onPath = placeOf.get(branchOfEdge[graph.edge[p]!]!) ?? -1;
+        furthest = Math.max(furthest, onPath);
+        if (onPath >= place && since[v] === -1) beyond[onPath] = v;
+        else if (since[v] === -1) {
+          since[v] = place;
+          queue.push(v);
+        }
+      }
+    }
+    const next = beyond[place]!;
+    if (next === -1 || since[next] !== -1) continue;
+    // Where the path beyond was reached another way, so is its source.
+    isCut[place] = hasSource || furthest > place ? 0 : 1;
+    since[next] = place + 1;
+    queue.push(next);
+  }
+  return { isCut, since };
+}
+
+/** Lists the devices that open by themselves between the sources and the node, outermost first, with their branch's place on the path. */
 export function listSectionalizing(
   study: Study,
   model: Model,
   upstream: Upstream,
-): { device: Device; opening: Opening }[] {
+): { device: Device; opening: Opening; place: number }[] {
   const distance = new Map(upstream.branches.map((branch, index) => [branch, index]));
   return (study.feeder.devices ?? [])
-    .map((device) => ({
-      device,
-      opening: { branch: model.branchIndex.get(device.branch)!, end: device.end },
-    }))
-    .filter(({ device, opening }) => isSectionalizing(device) && distance.has(opening.branch))
-    .sort((p, q) => distance.get(q.opening.branch)! - distance.get(p.opening.branch)!);
+    .map((device) => {
+      const branch = model.branchIndex.get(device.branch)!;
+      return { device, opening: { branch, end: device.end }, place: distance.get(branch) ?? -1 };
+    })
+    .filter(({ device, place }) => place !== -1 && isSectionalizing(device))
+    .sort((p, q) => q.place - p.place);
 }
 
 function isSectionalizing(device: Device): boolean {
