@@ -44,7 +44,14 @@ export type DeviceAsymmetry = {
   correctedLoading: number | null;
 };
 
-export type DeviceResult = { before: DeviceDuty; after?: DeviceDuty };
+/** The scenario, by id, and the state with more current available at a device than the model as it stands has. */
+export type WorstCase = Pick<DeviceDuty, 'availableA' | 'availableLoading' | 'dutyA' | 'loading'> & {
+  scenario: string;
+  state: 'before' | 'after';
+};
+
+/** Before and after are those of the model as it stands; `worst` is missing where no scenario of it is worse. */
+export type DeviceResult = { before: DeviceDuty; after?: DeviceDuty; worst?: WorstCase };
 
 export type PerFault = { threePhase: number | null; lineGround: number | null };
 

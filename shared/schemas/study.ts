@@ -155,6 +155,20 @@ export type Section = {
 /** What is known of a feeder of the model; lines and devices name it in `circuit`. */
 export type Circuit = { id: string; lineType?: 'three-wire' | 'four-wire' };
 
+/**
+ * A way to run the feeder besides the one that the lists describe: a bus tie closed, the alternate feed in. Fault currents
+ * are computed for each, and the worst of all decides; both name elements of the feeder, not of a project.
+ */
+export type Scenario = {
+  id: string;
+  /** What findings and warnings call it, the id where there is none. */
+  name?: string;
+  /** By id of a switch: whether it is closed. The others are as the list has them. */
+  switches?: Record<string, boolean>;
+  /** Ids of what is out of service: of a node with all that meets it, of any other element with nothing else. */
+  out?: string[];
+};
+
 /** Resistance, geometric mean radius and diameter, in metric units or in US ones. */
 export type BareConductor =
   | { ohmPerKm: number; gmrM: number; diameterM: number }
@@ -202,6 +216,7 @@ export type Feeder = ElementLists & {
   nodes: Node[];
   sections?: Section[];
   circuits?: Circuit[];
+  scenarios?: Scenario[];
   conductors?: Conductor[];
   cables?: Cable[];
   constructions?: Construction[];

@@ -38,7 +38,7 @@ export function measureOneState(kind: NetworkKind, count: number) {
   const parent = topology.parent.map((bus, index) => (bus === -1 ? Math.max(0, index - 1) : bus));
   const bare = bareTree(parent, [topology.z1, topology.z1, topology.z0], shunts);
 
-  const runs = 7;
+  const runs = 15;
   const perNode = (milliseconds: number) => Math.round((milliseconds / count) * 1e7) / 10;
   const whole = () => {
     const traced = traceTopology(model, choice);

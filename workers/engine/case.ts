@@ -1,4 +1,5 @@
 import type { Complex } from './complex.ts';
+import type { Wiring } from './wiring.ts';
 
 /*
  * Words of the engine
@@ -102,6 +103,8 @@ export type Model = {
   machines: readonly Shunt[];
   groundingBanks: readonly Shunt[];
   inverters: readonly CurrentSource[];
+  /** In a model that differs from another in its impedances alone: its own, in place of those that its branches tell. */
+  wiring?: Wiring;
 };
 
 export function isMember(membership: Membership, ofProject: boolean): boolean {
@@ -113,6 +116,16 @@ export function isMember(membership: Membership, ofProject: boolean): boolean {
 export function isPresent(choice: CaseChoice, element: Belonging): boolean {
   if ((!choice.project && element.ofProject) || (!choice.companions && element.companion)) return false;
   return !choice.out?.has(element.id);
+}
+
+/** Whether a branch or switch is there with both of its nodes. */
+export function isInService(
+  { nodes }: Model,
+  choice: CaseChoice,
+  element: Belonging & { from: number; to: number },
+): boolean {
+  const { from, to } = element;
+  return isPresent(choice, element) && isPresent(choice, nodes[from]!) && isPresent(choice, nodes[to]!);
 }
 
 /** Whether a switch joins its nodes. */

@@ -1,3 +1,4 @@
+import type { Scenario } from '../../shared/schemas/study.ts';
 import { allPhases } from './case.ts';
 import { checkSupply } from './check-supply.ts';
 import type { AtNodes, BetweenNodes, JoinedStudy } from './check-references.ts';
@@ -8,13 +9,14 @@ import { phaseSet } from './per-unit.ts';
 import { PhaseShifts } from './phase-shifts.ts';
 import type { Problems } from './problems.ts';
 import { describeValue } from './problems.ts';
+import { closesAny, joinAsIn, noteForScenario } from './scenario-network.ts';
 import type { ElementKind } from './study-elements.ts';
 import { clockHourOf } from './transformer-branch.ts';
 
 /* That what is joined can be joined. Everything is looked at with the project and all that came with generators in. */
 
-/** Notes what is wrong with the network as a whole; shape and references must be right. */
-export function checkNetwork(study: JoinedStudy, problems: Problems): void {
+/** Notes what is wrong with the network as a whole, and with what scenarios make of it; shape and references must be right. */
+export function checkNetwork(study: JoinedStudy, scenarios: readonly Scenario[], problems: Problems): void {
   const nodePhases = phasesOfAll(study.nodes.elements);
   const linePhases = phasesOfAll(study.lines.list.elements);
   const before = problems.length;
@@ -26,6 +28,19 @@ export function checkNetwork(study: JoinedStudy, problems: Problems): void {
   if (problems.length > before) return;
   checkShifts(study, nodePhases, problems);
   checkSupply(study, nodePhases, linePhases, problems);
+  if (problems.length > before) return;
+  // What a scenario takes away spoils nothing: what it leaves without a source is dead.
+  scenarios.forEach((scenario, index) => {
+    if (!closesAny(study, scenario)) return;
+    const inScenario = joinAsIn(scenario, study);
+    noteForScenario(scenario, index, problems, (found) => {
+      checkVoltages(inScenario, found);
+      checkLateralLoops(inScenario, nodePhases, linePhases, found);
+      if (found.length > 0) return;
+      checkShifts(inScenario, nodePhases, found);
+      checkSupply(inScenario, nodePhases, linePhases, found);
+    });
+  });
 }
 
 function phasesOfAll(elements: readonly { phases: string }[]): Uint8Array {
@@ -54,7 +69,7 @@ function checkVoltages({ nodes, lines, switches }: JoinedStudy, problems: Proble
   };
   for (let index = 0; index < lines.from.length; index++) compare(lines, index);
   for (let index = 0; index < switches.from.length; index++) {
-    if (switches.list.elements[index]!.closed) compare(switches, index);
+    if (switches.joins[index]) compare(switches, index);
   }
 }
 
@@ -113,9 +128,11 @@ function checkLateralLoops(
         : 'a loop of laterals';
     problems.add(() => ({ pointer: list.pointer(index), got, expected: 'laterals without loops' }));
   };
-  for (let index = 0; index < lines.from.length; index++) join(lines, index, linePhases[index] === allPhases);
+  for (let index = 0; index < lines.from.length; index++) {
+    if (lines.joins[index]) join(lines, index, linePhases[index] === allPhases);
+  }
   for (let index = 0; index < switches.from.length; index++) {
-    if (switches.list.elements[index]!.closed) join(switches, index, true);
+    if (switches.joins[index]) join(switches, index, true);
   }
 }
 
@@ -123,12 +140,11 @@ function checkIslands(study: JoinedStudy, problems: Problems): void {
   const { nodes, lines, transformers, switches, sources, machines } = study;
   const count = nodes.elements.length;
   const islands = new DisjointSets(count);
-  for (const { from, to } of [lines, transformers]) {
-    for (let index = 0; index < from.length; index++) islands.join(from[index]!, to[index]!);
+  for (const { from, to, joins } of [lines, transformers, switches]) {
+    for (let index = 0; index < from.length; index++) {
+      if (joins[index]) islands.join(from[index]!, to[index]!);
+    }
   }
-  switches.list.elements.forEach(({ closed }, index) => {
-    if (closed) islands.join(switches.from[index]!, switches.to[index]!);
-  });
   const isFed = new Uint8Array(count);
   for (const { node } of [sources, machines]) for (const at of node) isFed[islands.find(at)] = 1;
   for (let node = 0; node < count; node++) {
@@ -152,12 +168,13 @@ function checkShifts(
   if (transformers.from.length === 0) return;
   const shifts = new PhaseShifts(nodePhases.length);
   const { elements } = transformers.list;
-  for (let index = 0; index < switches.from.length; index++) {
-    if (switches.list.elements[index]!.closed) shifts.join(switches.from[index]!, switches.to[index]!, 0);
+  for (const { from, to, joins } of [switches, lines]) {
+    for (let index = 0; index < from.length; index++) {
+      if (joins[index]) shifts.join(from[index]!, to[index]!, 0);
+    }
   }
-  for (let index = 0; index < lines.from.length; index++)
-    shifts.join(lines.from[index]!, lines.to[index]!, 0);
   for (let index = 0; index < transformers.from.length; index++) {
+    if (!transformers.joins[index]) continue;
     const clockHour = clockHourOf(elements[index]!.connection);
     const there = shifts.join(transformers.from[index]!, transformers.to[index]!, clockHour);
     if (there === clockHour) continue;

@@ -1,6 +1,7 @@
 import type { Study } from '../../shared/schemas/study.ts';
 import { ElementList } from './element-list.ts';
 import { IdIndex } from './id-index.ts';
+import { checkScenarioReferences } from './scenario-references.ts';
 import type { Problems } from './problems.ts';
 import { describeValue } from './problems.ts';
 import type { ElementKind } from './study-elements.ts';
@@ -10,7 +11,7 @@ import type { ElementKind } from './study-elements.ts';
 const nodeKinds = ['sources', 'groundingBanks', 'machines', 'inverters', 'loads'] as const;
 const branchKinds = ['lines', 'transformers', 'switches'] as const;
 
-/** A list and the numbers of the nodes that its elements name. */
+/** A list and the numbers of the nodes that its elements name; `joins` is 0 for a branch that joins nothing. */
 export type AtNodes<K extends (typeof nodeKinds)[number] = (typeof nodeKinds)[number]> = {
   list: ElementList<K>;
   node: Int32Array;
@@ -19,6 +20,7 @@ export type BetweenNodes<K extends (typeof branchKinds)[number] = (typeof branch
   list: ElementList<K>;
   from: Int32Array;
   to: Int32Array;
+  joins: Uint8Array;
 };
 
 /** What a study joins, with numbers in place of ids; -1 stands for what there is not. */
@@ -39,7 +41,8 @@ export function checkReferences(study: Study, problems: Problems): JoinedStudy {
   const between = <K extends (typeof branchKinds)[number]>(kind: K): BetweenNodes<K> => {
     const list = listOfKind(kind);
     const count = list.elements.length;
-    return { list, from: new Int32Array(count), to: new Int32Array(count) };
+    const joins = new Uint8Array(count).fill(1);
+    return { list, from: new Int32Array(count), to: new Int32Array(count), joins };
   };
   const joined: JoinedStudy = {
     nodes,
@@ -52,6 +55,9 @@ export function checkReferences(study: Study, problems: Problems): JoinedStudy {
     transformers: between('transformers'),
     switches: between('switches'),
   };
+  joined.switches.list.elements.forEach(({ closed }, index) => {
+    if (!closed) joined.switches.joins[index] = 0;
+  });
   const devices = listOfKind('devices');
 
   // Which kinds share one set of ids: what refers to them must not be in doubt.
@@ -79,6 +85,7 @@ export function checkReferences(study: Study, problems: Problems): JoinedStudy {
   resolve(joined.transformers.list, 'unitMachine', generatorIds, problems);
   resolve(devices, 'branch', branchIds, problems);
   checkFeederLists(study, deviceIds, problems);
+  checkScenarioReferences(study, joined, problems);
   if (study.project) refer(study.project.node, nodeIds, '/project/node', problems);
   return joined;
 }
@@ -141,7 +148,7 @@ function checkEnds({ list, from, to }: BetweenNodes, problems: Problems): void {
 }
 
 function checkFeederLists({ feeder }: Study, deviceIds: Namespace, problems: Problems): void {
-  for (const kind of ['sections', 'circuits'] as const) {
+  for (const kind of ['sections', 'circuits', 'scenarios'] as const) {
     const firstOf = new Map<string, number>();
     (feeder[kind] ?? []).forEach(({ id }, index) => {
       const first = firstOf.get(id);

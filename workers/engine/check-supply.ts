@@ -21,8 +21,8 @@ export function checkSupply(
   const from = [...lines.from, ...switches.from].map(placeOf);
   const to = [...lines.to, ...switches.to].map(placeOf);
   const lineCount = lines.from.length;
-  switches.list.elements.forEach(({ closed }, index) => {
-    if (!closed) to[lineCount + index] = from[lineCount + index]!;
+  [...lines.joins, ...switches.joins].forEach((joins, edge) => {
+    if (!joins) to[edge] = from[edge]!;
   });
   const { start, neighbour, edge } = buildGraph(core + 1, from, to);
 

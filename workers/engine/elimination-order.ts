@@ -58,6 +58,9 @@ class DegreeLists {
   }
 }
 
+/** Longer lists are not read to find one bus in them: a hub would be read once per spoke. */
+const longList = 16;
+
 /** The neighbour lists while buses are eliminated: those gone are skipped, and dropped when a list is next read. */
 class EliminationGraph {
   readonly degree: Int32Array;
@@ -120,6 +123,28 @@ class EliminationGraph {
     }
   }
 
+  /** Puts `by` in the place of `gone` in the list of v; false, and nothing done, where v has `by` already. */
+  replace(v: number, gone: number, by: number): boolean {
+    const first = this.first[v]!;
+    const end = first + this.listed[v]!;
+    let place = -1;
+    for (let p = first; p < end; p++) {
+      const u = this.pool[p]!;
+      if (u === by) return false;
+      if (u === gone) place = p;
+    }
+    this.pool[place] = by;
+    return true;
+  }
+
+  isLong(v: number): boolean {
+    return this.listed[v]! > longList;
+  }
+
+  isLonger(v: number, u: number): boolean {
+    return this.listed[v]! > this.listed[u]!;
+  }
+
   append(v: number, u: number): void {
     if (this.listed[v] === this.room[v]) this.moveToMoreRoom(v);
     this.pool[this.first[v]! + this.listed[v]!] = u;
@@ -155,6 +180,10 @@ export function orderByMinimumDegree(adjacency: Adjacency): Int32Array {
     order[k] = v;
     const size = graph.readNeighbours(v, ring);
     graph.eliminate(v);
+    if (size === 2) {
+      joinPair(v);
+      continue;
+    }
     joinRing(size);
     for (let i = 0; i < size; i++) {
       lists.changeDegree(ring[i]!, gained[ring[i]!]! - 1);
@@ -162,6 +191,20 @@ export function orderByMinimumDegree(adjacency: Adjacency): Int32Array {
     }
   }
   return order;
+
+  /** Most of a mesh lies in series: what is between two buses gives its place in their lists to the other, and no degree changes. */
+  function joinPair(v: number): void {
+    const isFirstLonger = graph.isLonger(ring[0]!, ring[1]!);
+    const u = ring[isFirstLonger ? 1 : 0]!;
+    const w = ring[isFirstLonger ? 0 : 1]!;
+    if (graph.replace(u, v, w)) {
+      if (graph.isLong(w)) graph.append(w, u);
+      else graph.replace(w, v, u);
+    } else {
+      lists.changeDegree(u, -1);
+      lists.changeDegree(w, -1);
+    }
+  }
 
   /** Joins every pair of the ring; the longest list is never read, or a hub would be read once per spoke. */
   function joinRing(size: number): void {

@@ -1,8 +1,7 @@
 import type { FaultKind } from '../../shared/schemas/study-result.ts';
 import type { Model } from './case.ts';
-import type { Complex } from './complex.ts';
 import { changeImpedances } from './solve-alike.ts';
-import type { SolvedCase } from './solve-case.ts';
+import type { TheveninCase } from './solve-case.ts';
 import { findFaultPoint } from './solve-case.ts';
 import { findComplexXr } from './x-over-r.ts';
 
@@ -15,12 +14,12 @@ const frequencyRatio = 0.4;
 
 /** The network at the equivalent frequency. */
 export function atEquivalentFrequency(model: Model): Model {
-  const slow = ({ re, im }: Complex): Complex => ({ re, im: im * frequencyRatio });
+  const slow = { re: (re: number) => re, im: (_: number, im: number) => im * frequencyRatio };
   return changeImpedances(model, { network: slow, path: slow });
 }
 
 /** Gives X/R by kind of fault from the network at the equivalent frequency; 0 where nothing feeds the node. */
-export function findEquivalentXr(equivalent: SolvedCase, node: number): (kind: FaultKind) => number {
+export function findEquivalentXr(equivalent: TheveninCase, node: number): (kind: FaultKind) => number {
   const point = findFaultPoint(equivalent, node);
   return (kind) => (point ? findComplexXr(point, kind) / frequencyRatio : 0);
 }

@@ -2,6 +2,7 @@ import type { Model, PhaseTriple } from './case.ts';
 import type { ComplexArray } from './complex.ts';
 import { a, a2, addAt, at, complexArray } from './complex.ts';
 import type { Topology } from './topology.ts';
+import { wiringOf } from './wiring.ts';
 
 /*
  * Laterals are trees, and a spot's phases are phases of every segment between it and the tap. So the path to a spot
@@ -14,6 +15,7 @@ export type LateralPaths = { readonly self: ComplexArray; readonly mutual: Compl
 
 /** Adds up the impedance between the tap and each spot. */
 export function addUpPaths(model: Model, { laterals }: Topology): LateralPaths {
+  const { selfRe, selfIm, mutualRe, mutualIm } = wiringOf(model);
   const count = laterals.tap.length;
   const self = complexArray(count);
   const mutual = complexArray(count);
@@ -25,10 +27,12 @@ export function addUpPaths(model: Model, { laterals }: Topology): LateralPaths {
         path.im[spot] = path.im[parent]!;
       }
     }
-    const branch = model.branches[laterals.branch[spot]!];
-    if (!branch) continue;
-    addAt(self, spot, branch.self);
-    addAt(mutual, spot, branch.mutual);
+    const branch = laterals.branch[spot]!;
+    if (branch === -1) continue;
+    self.re[spot]! += selfRe[branch]!;
+    self.im[spot]! += selfIm[branch]!;
+    mutual.re[spot]! += mutualRe[branch]!;
+    mutual.im[spot]! += mutualIm[branch]!;
   }
   return { self, mutual };
 }

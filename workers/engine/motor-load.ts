@@ -22,11 +22,16 @@ export function addMotorLoads(study: Study): Study {
   };
 }
 
+/** Id of the machine that stands for the motors of a load. */
+export function motorIdOf(load: string): string {
+  return `motors of ${load}`;
+}
+
 function motorOf(load: Load): Machine[] {
   const kva = (load.motorFraction ?? 0) * Math.hypot(load.kw, load.kvar);
   if (kva === 0) return [];
   const motor: Machine = {
-    id: `motors of ${load.id}`,
+    id: motorIdOf(load.id),
     node: load.node,
     kind: 'induction',
     kva,

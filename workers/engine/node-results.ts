@@ -8,6 +8,7 @@ import type { Impedance } from '../../shared/schemas/study.ts';
 import { allPhases } from './case.ts';
 import type { Complex } from './complex.ts';
 import { magnitude } from './complex.ts';
+import type { FaultArrays } from './fault-currents.ts';
 import { findBusFaults, findSpotFaults } from './fault-currents.ts';
 import type { FaultPoint } from './faults.ts';
 import { largestPhase, lineGroundFault, listBoltedFaults } from './faults.ts';
@@ -66,30 +67,48 @@ export function reportNodes(
   faultOhm: number,
 ): Record<string, NodeResult> {
   const readers = new Map<number, VoltageReaders>();
-  const reports: [string, NodeResult][] = [];
+  const known = new Map<SolvedCase, CaseFaults>();
+  const faultsOf = (solved: SolvedCase): CaseFaults => {
+    let faults = known.get(solved);
+    if (!faults) {
+      faults = { atBus: findBusFaults(solved), atSpot: findSpotFaults(solved) };
+      known.set(solved, faults);
+    }
+    return faults;
+  };
+  const read = (state: StateName, kv: number) => {
+    const solved = caseOf(state, kv);
+    return readState(solved, faultsOf(solved), kv);
+  };
+  const reports: Record<string, NodeResult> = {};
   for (let node = 0; node < nodes.length; node++) {
     const { id, kv, ofProject } = nodes[node]!;
     if (ofProject) continue;
     let at = readers.get(kv);
     if (!at) {
       at = {
-        none: readState(caseOf('none', kv), kv),
-        before: readState(caseOf('before', kv), kv),
-        after: withProject ? readState(caseOf('after', kv), kv) : undefined,
-        minimum: readMinimum(caseOf('minimum', kv), kv, faultOhm),
+        none: read('none', kv),
+        before: read('before', kv),
+        after: withProject ? read('after', kv) : undefined,
+        minimum: readMinimum(caseOf('minimum', kv), faultsOf(caseOf('minimum', kv)), kv, faultOhm),
       };
       readers.set(kv, at);
     }
     const none = at.none(node);
     const before = at.before(node);
     const minimum = at.minimum(node);
-    reports.push([
-      id,
-      at.after ? { none, before, after: at.after(node), minimum } : { none, before, minimum },
-    ]);
+    const report = at.after ? { none, before, after: at.after(node), minimum } : { none, before, minimum };
+    if (id === '__proto__') Object.defineProperty(reports, id, { ...asField, value: report });
+    else reports[id] = report;
   }
-  return Object.fromEntries(reports);
+  return reports;
 }
+
+/** A field of this name would be taken for the object's prototype if it were set like any other. */
+const asField = { writable: true, enumerable: true, configurable: true };
+
+/** Of all buses and of all spots; cases that answer for several voltages are gone through once. */
+type CaseFaults = { atBus: FaultArrays; atSpot: FaultArrays };
 
 type VoltageReaders = {
   none: (node: number) => NodeState;
@@ -99,10 +118,13 @@ type VoltageReaders = {
 };
 
 /** Makes a reader of `reportNode` for all nodes of one voltage, from a single pass over the case. */
-function readState(solved: SolvedCase, kv: number): (node: number) => NodeState {
+function readState(
+  solved: SolvedCase,
+  { atBus, atSpot }: CaseFaults,
+  kv: number,
+): (node: number) => NodeState {
   const { busOf, laterals } = solved.topology;
   const { positive, negative, zero } = solved.networks;
-  const { atBus, atSpot } = faultsOf(solved);
   const amps = baseAmps(solved.model.baseMva, kv);
   const ohms = baseOhms(solved.model.baseMva, kv);
   const inOhms = ({ z, hasPath }: SequenceNetwork, bus: number): Impedance | null =>
@@ -110,9 +132,10 @@ function readState(solved: SolvedCase, kv: number): (node: number) => NodeState 
   return (node) => {
     const bus = busOf[node]!;
     if (bus !== -1) {
+      const z1 = inOhms(positive, bus);
       return {
-        z1: inOhms(positive, bus),
-        z2: inOhms(negative, bus),
+        z1,
+        z2: negative === positive ? z1 : inOhms(negative, bus),
         z0: positive.hasPath[bus] ? inOhms(zero, bus) : null,
         threePhase: atBus.threePhase[bus]! * amps,
         lineGround: atBus.lineGround[bus]! * amps,
@@ -135,9 +158,13 @@ function readState(solved: SolvedCase, kv: number): (node: number) => NodeState 
 }
 
 /** The smallest currents that protection must see: one line to ground through `faultOhm`, the others bolted. */
-function readMinimum(solved: SolvedCase, kv: number, faultOhm: number): (node: number) => MinimumState {
+function readMinimum(
+  solved: SolvedCase,
+  { atBus, atSpot }: CaseFaults,
+  kv: number,
+  faultOhm: number,
+): (node: number) => MinimumState {
   const { busOf, laterals } = solved.topology;
-  const { atBus, atSpot } = faultsOf(solved);
   const amps = baseAmps(solved.model.baseMva, kv);
   const through = { re: faultOhm / baseOhms(solved.model.baseMva, kv), im: 0 };
   const lineGroundThrough = (node: number): number => {
@@ -162,8 +189,4 @@ function readMinimum(solved: SolvedCase, kv: number, faultOhm: number): (node: n
       lineLine: hasPair ? faults.lineLine[place]! * amps : null,
     };
   };
-}
-
-function faultsOf(solved: SolvedCase) {
-  return { atBus: findBusFaults(solved), atSpot: findSpotFaults(solved) };
 }

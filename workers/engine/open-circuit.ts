@@ -68,7 +68,8 @@ export function solveOpenCircuit(
   const balanced = taking.every(({ phases }) => phases === allPhases);
   const v1 = complexArray(busCount);
   const v2 = complexArray(busCount);
-  const v0 = complexArray(busCount);
+  // Where both are zero everywhere, one array serves for both.
+  const v0 = balanced ? v2 : complexArray(busCount);
   const spotFlow = phaseArrays(laterals.tap.length);
   if (taking.length > 0) {
     injectCurrents();

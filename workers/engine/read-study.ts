@@ -29,7 +29,7 @@ export function checkStudy(value: unknown): { study: Study } | { problems: Probl
   const joined = checkReferences(study, problems);
   checkConstructions(study, problems);
   if (problems.length > 0) return { problems };
-  checkNetwork(joined, problems);
+  checkNetwork(joined, study.feeder.scenarios ?? [], problems);
   return problems.length > 0 ? { problems } : { study };
 }
 

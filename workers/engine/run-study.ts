@@ -1,10 +1,9 @@
 import type { RuleSet } from '../../shared/schemas/rule-sets.ts';
-import type { DeviceDuty, DeviceResult, StudyResult } from '../../shared/schemas/study-result.ts';
+import type { StudyResult } from '../../shared/schemas/study-result.ts';
 import { resultFormat } from '../../shared/schemas/study-result.ts';
-import type { Device, Study } from '../../shared/schemas/study.ts';
-import type { Model } from './case.ts';
-import { findDeviceAsymmetry } from './device-asymmetry.ts';
-import { findDeviceDuty } from './devices.ts';
+import type { Study } from '../../shared/schemas/study.ts';
+import { reportDevices } from './device-results.ts';
+import { listCases } from './findings/operating-cases.ts';
 import { answerQuestions } from './findings/questions.ts';
 import { traceUpstream } from './findings/upstream.ts';
 import { reportLines } from './line-results.ts';
@@ -13,8 +12,8 @@ import { listMethodWarnings } from './iec60909.ts';
 import { prepareModel } from './prepare-model.ts';
 import { reportGrounding, reportProject, solveIsland } from './project-results.ts';
 import type { SolvedCase } from './solve-case.ts';
-import type { DutyState, StateSolver } from './state-solver.ts';
-import { makeStateSolver } from './state-solver.ts';
+import { listScenarioWarnings } from './scenario-warnings.ts';
+import { makeStateSolvers } from './state-solver.ts';
 import type { StateName } from './states.ts';
 import { listWarnings } from './warnings.ts';
 
@@ -46,7 +45,8 @@ export function runStudy(study: Study, ruleSet: RuleSet, onStep?: (step: StudySt
 
   begin('network');
   const model = prepareModel(study);
-  const solver = makeStateSolver(study, model);
+  const operating = makeStateSolvers(study, model);
+  const solver = operating.base;
   const { kv } = model.nodes[model.nodeIndex.get(study.project?.node ?? study.feeder.nodes[0]!.id)!]!;
   const solve = (state: StateName): SolvedCase => {
     begin(state);
@@ -68,7 +68,7 @@ export function runStudy(study: Study, ruleSet: RuleSet, onStep?: (step: StudySt
   );
 
   begin('devices');
-  const devices = reportDevices(study, model, solver);
+  const devices = reportDevices(study, model, operating);
 
   const { lines, warnings } = reportLines(study);
   const { project } = study;
@@ -78,7 +78,12 @@ export function runStudy(study: Study, ruleSet: RuleSet, onStep?: (step: StudySt
     devices,
     ...(lines ? { lines } : {}),
     findings: [],
-    warnings: [...listWarnings(study, states), ...listMethodWarnings(study), ...warnings],
+    warnings: [
+      ...listWarnings(study, states),
+      ...listScenarioWarnings(operating, kv, project !== undefined),
+      ...listMethodWarnings(study),
+      ...warnings,
+    ],
   };
   if (project) {
     const poi = model.nodeIndex.get(project.node)!;
@@ -91,24 +96,9 @@ export function runStudy(study: Study, ruleSet: RuleSet, onStep?: (step: StudySt
     };
     begin('findings');
     const upstream = traceUpstream(model, states.after.choice, poi);
-    result.findings = answerQuestions({ study, project, ruleSet, model, states, poi, upstream, solver });
+    const cases = listCases({ operating, model, kv, poi, upstream });
+    result.findings = answerQuestions({ study, project, ruleSet, model, states, poi, upstream, cases });
   }
   begin('finished');
   return result;
-}
-
-function reportDevices(study: Study, model: Model, { solveDuty }: StateSolver): Record<string, DeviceResult> {
-  const report = (state: DutyState, device: Device): DeviceDuty => {
-    const branch = model.branches[model.branchIndex.get(device.branch)!]!;
-    const duty = solveDuty(state, model.nodes[branch[device.end]]!.kv);
-    // X/R says something of a rating; without one, two more networks would be solved for nothing.
-    const asymmetry = device.interruptingKa === undefined ? undefined : findDeviceAsymmetry(duty, device);
-    return { ...findDeviceDuty(duty.solved, device), ...asymmetry };
-  };
-  return Object.fromEntries(
-    (study.feeder.devices ?? []).map((device) => [
-      device.id,
-      { before: report('before', device), ...(study.project ? { after: report('after', device) } : {}) },
-    ]),
-  );
 }

@@ -33,11 +33,12 @@ export type SequenceNetwork = {
   readonly weakBuses: readonly number[];
 };
 
-export type SequenceNetworks = {
-  readonly positive: SequenceNetwork;
-  readonly negative: SequenceNetwork;
-  readonly zero: SequenceNetwork;
-};
+type OfSequences<N> = { readonly positive: N; readonly negative: N; readonly zero: N };
+
+export type SequenceNetworks = OfSequences<SequenceNetwork>;
+
+/** What is known of networks that are only asked for driving-point impedances. */
+export type DrivingPoints = OfSequences<Pick<SequenceNetwork, 'z' | 'hasPath'>>;
 
 /** Builds, sweeps and factorizes the networks of one case. */
 export function solveSequenceNetworks(
@@ -45,8 +46,28 @@ export function solveSequenceNetworks(
   choice: CaseChoice,
   topology: Topology,
 ): SequenceNetworks {
-  const solve = (sequence: Sequence) =>
-    solveNetwork(topology, sequence, listFeeds(model, choice, topology, sequence));
+  return ofSequences(model, choice, (sequence) =>
+    solveNetwork(topology, sequence, listFeeds(model, choice, topology, sequence)),
+  );
+}
+
+/** As `solveSequenceNetworks`, in less memory: what only later sweeps need is kept in `spare`, one after the other. */
+export function solveDrivingPoints(
+  model: Model,
+  choice: CaseChoice,
+  topology: Topology,
+  spare: ComplexArray,
+): DrivingPoints {
+  return ofSequences(model, choice, (sequence) => {
+    spare.re.fill(0);
+    spare.im.fill(0);
+    const feeds = listFeeds(model, choice, topology, sequence);
+    const { z, hasPath } = solveNetwork(topology, sequence, feeds, spare);
+    return { z, hasPath };
+  });
+}
+
+function ofSequences<N>(model: Model, choice: CaseChoice, solve: (sequence: Sequence) => N): OfSequences<N> {
   const positive = solve('z1');
   return {
     positive,
@@ -60,7 +81,12 @@ type Sequence = 'z1' | 'z2' | 'z0';
 
 type Feed = { bus: number; z: Complex };
 
-function solveNetwork(topology: Topology, sequence: Sequence, feeds: readonly Feed[]): SequenceNetwork {
+function solveNetwork(
+  topology: Topology,
+  sequence: Sequence,
+  feeds: readonly Feed[],
+  shares = complexArray(topology.busCount),
+): SequenceNetwork {
   const { busCount, meshCount } = topology;
   const isZero = sequence === 'z0';
   const trees: Trees = {
@@ -68,7 +94,6 @@ function solveNetwork(topology: Topology, sequence: Sequence, feeds: readonly Fe
     series: isZero ? topology.z0 : topology.z1,
     meshCount,
   };
-  const shares = complexArray(busCount);
   const hasPath = new Uint8Array(busCount);
   const meshScale = new Float64Array(meshCount);
   for (const { bus, z } of feeds) {
@@ -118,7 +143,7 @@ function solveMesh(
 }
 
 /** Gives Z_uu of a bus. */
-export function drivingPoint({ z }: SequenceNetwork, bus: number): Complex {
+export function drivingPoint({ z }: Pick<SequenceNetwork, 'z'>, bus: number): Complex {
   return { re: z.re[bus]!, im: z.im[bus]! };
 }
 
@@ -189,15 +214,14 @@ export function listFeeds(
 /** Zero-sequence shunts of star-delta transformers, also of one that is opened at its other end. */
 function listTransformerEarths(model: Model, choice: CaseChoice, { busOf }: Topology): Feed[] {
   const earths: Feed[] = [];
-  for (const index of wiringOf(model).earthing) {
+  for (const { branch: index, end, z } of wiringOf(model).earths) {
     const branch = model.branches[index]!;
-    const path = branch.zeroSequence;
-    if (path.kind !== 'shunt' || !isPresent(choice, branch)) continue;
+    if (!isPresent(choice, branch)) continue;
     const opening = choice.opened?.find((each) => each.branch === index);
-    if (opening?.end === path.end || busOf[branch[path.end]] === -1) continue;
+    if (opening?.end === end || busOf[branch[end]] === -1) continue;
     // Unless it is opened, a branch is there only where both its ends are.
-    if (!opening && busOf[branch[path.end === 'from' ? 'to' : 'from']] === -1) continue;
-    earths.push({ bus: busOf[branch[path.end]]!, z: path.z });
+    if (!opening && busOf[branch[end === 'from' ? 'to' : 'from']] === -1) continue;
+    earths.push({ bus: busOf[branch[end]]!, z });
   }
   return earths;
 }

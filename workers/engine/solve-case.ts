@@ -6,7 +6,7 @@ import type { LateralPaths } from './laterals.ts';
 import { addUpPaths, phasesAt } from './laterals.ts';
 import type { OpenCircuit } from './open-circuit.ts';
 import { phasesOf, solveOpenCircuit } from './open-circuit.ts';
-import type { SequenceNetworks } from './sequence-networks.ts';
+import type { DrivingPoints, SequenceNetworks } from './sequence-networks.ts';
 import { drivingPoint, solveSequenceNetworks } from './sequence-networks.ts';
 import type { Topology } from './topology.ts';
 import { shareTopology } from './topology.ts';
@@ -21,6 +21,11 @@ export type SolvedCase = {
   readonly openCircuit: OpenCircuit;
 };
 
+/** Of a case, what the Thevenin equivalent at a place needs. */
+export type TheveninCase = Pick<SolvedCase, 'topology' | 'paths' | 'openCircuit'> & {
+  readonly networks: DrivingPoints;
+};
+
 /** Solves one choice of what is in and out. */
 export function solveCase(model: Model, choice: CaseChoice): SolvedCase {
   const topology = shareTopology(model, choice);
@@ -29,14 +34,22 @@ export function solveCase(model: Model, choice: CaseChoice): SolvedCase {
   return { model, choice, topology, networks, paths: addUpPaths(model, topology), openCircuit };
 }
 
+/** Gives the case without its inverters, which are in none of its networks. */
+export function withoutInverters(solved: SolvedCase): SolvedCase {
+  const { model, topology, networks } = solved;
+  if (model.inverters.length === 0) return solved;
+  const choice: CaseChoice = { ...solved.choice, inverters: 'none' };
+  return { ...solved, choice, openCircuit: solveOpenCircuit(model, choice, topology, networks) };
+}
+
 /** The bus of a node, or the one that its lateral hangs from; -1 where the node is absent or cut off. */
-export function busOfNode({ topology }: SolvedCase, node: number): number {
+export function busOfNode({ topology }: Pick<SolvedCase, 'topology'>, node: number): number {
   const spot = topology.laterals.spotOf[node]!;
   return spot === -1 ? topology.busOf[node]! : topology.laterals.tap[spot]!;
 }
 
 /** Gives the Thevenin equivalent at a node, nothing where no source or machine feeds it. */
-export function findFaultPoint(solved: SolvedCase, node: number): FaultPoint | undefined {
+export function findFaultPoint(solved: TheveninCase, node: number): FaultPoint | undefined {
   const { topology, networks, paths, openCircuit } = solved;
   const bus = busOfNode(solved, node);
   if (bus === -1 || !networks.positive.hasPath[bus]) return undefined;

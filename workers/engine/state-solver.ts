@@ -1,12 +1,13 @@
-import type { Study } from '../../shared/schemas/study.ts';
+import type { Scenario, Study } from '../../shared/schemas/study.ts';
 import type { Model } from './case.ts';
 import type { VoltageLevel } from './iec60909.ts';
 import { correctImpedances, levelOf, voltageFactors } from './iec60909.ts';
 import { atEquivalentFrequency } from './iec60909-peak.ts';
 import { addMotorLoads } from './motor-load.ts';
 import { prepareModel } from './prepare-model.ts';
+import { choiceOfScenario } from './scenarios.ts';
 import { solveAlike } from './solve-alike.ts';
-import type { SolvedCase } from './solve-case.ts';
+import type { SolvedCase, TheveninCase } from './solve-case.ts';
 import { solveCase } from './solve-case.ts';
 import type { StateName } from './states.ts';
 import { choiceOfState } from './states.ts';
@@ -15,7 +16,8 @@ import { reduceSeparately, separateModels } from './x-over-r.ts';
 
 /*
  * Which case answers for a fault: by the state, by the voltage of the faulted node (IEC 60909-0 has a factor for each
- * level), and for the duty of devices with the motors in the load where the study asks for them.
+ * level), and for the duty of devices with the motors in the load where the study asks for them; once for the model as it
+ * stands and once for each scenario.
  */
 
 /** A case for the duty of devices, and the networks that give X/R in it; each is solved when first asked for. */
@@ -24,21 +26,26 @@ export type DutyCase = {
   readonly frequencyHz: number;
   readonly separate: () => SeparateCases;
   /** With method "iec60909": the network at the equivalent frequency. */
-  readonly equivalent?: () => SolvedCase;
+  readonly equivalent?: () => TheveninCase;
 };
 
 export type DutyState = 'before' | 'after';
 
 export type StateSolver = {
+  /** What the case differs in from the model as it stands; nothing where it does not. */
+  readonly scenario: Scenario | undefined;
   /** The case of a state for faults at nodes of this voltage. */
   readonly solve: (state: StateName, kv: number) => SolvedCase;
   readonly solveDuty: (state: DutyState, kv: number) => DutyCase;
 };
 
+/** Solvers of the model as it stands and of each scenario that the study lists. */
+export type OperatingCases = { readonly base: StateSolver; readonly scenarios: readonly StateSolver[] };
+
 type Network = { study: Study; model: Model };
 
-/** Makes a solver that solves each case once; `model` is the study's. */
-export function makeStateSolver(study: Study, model: Model): StateSolver {
+/** Makes solvers that solve each case once; `model` is the study's. */
+export function makeStateSolvers(study: Study, model: Model): OperatingCases {
   const isIec = study.options?.method === 'iec60909';
   const hasMotors = study.options?.motorLoad === true;
   const prepare = (given: Study): Network => {
@@ -51,29 +58,36 @@ export function makeStateSolver(study: Study, model: Model): StateSolver {
   const slowed = once(() => atEquivalentFrequency(forDuty().model));
 
   const levelAt = (kv: number): VoltageLevel => (isIec ? levelOf(kv) : 'high');
-  const choose = (state: StateName, level: VoltageLevel) =>
-    choiceOfState(state, isIec ? { ...study, prefaultFactor: voltageFactors(level, study) } : study);
 
-  const solve = remember((level: VoltageLevel) =>
-    remember((state: StateName) =>
-      solveCase(state === 'minimum' ? model : largest.model, choose(state, level)),
-    ),
-  );
-  const solveDuty = remember((level: VoltageLevel) =>
-    remember((state: DutyState): DutyCase => {
-      const solved = hasMotors ? solveCase(forDuty().model, choose(state, level)) : solve(level)(state);
-      return {
-        solved,
-        frequencyHz: study.frequencyHz,
-        separate: once(() => reduceSeparately(separated(), solved)),
-        ...(isIec && { equivalent: once(() => solveAlike(solved, slowed())) }),
-      };
-    }),
-  );
-  return {
-    solve: (state, kv) => solve(levelAt(kv))(state),
-    solveDuty: (state, kv) => solveDuty(levelAt(kv))(state),
+  const solverFor = (scenario?: Scenario): StateSolver => {
+    const differs = scenario && choiceOfScenario(scenario);
+    const choose = (state: StateName, level: VoltageLevel) => ({
+      ...choiceOfState(state, isIec ? { ...study, prefaultFactor: voltageFactors(level, study) } : study),
+      ...differs,
+    });
+    const solve = remember((level: VoltageLevel) =>
+      remember((state: StateName) =>
+        solveCase(state === 'minimum' ? model : largest.model, choose(state, level)),
+      ),
+    );
+    const solveDuty = remember((level: VoltageLevel) =>
+      remember((state: DutyState): DutyCase => {
+        const solved = hasMotors ? solveCase(forDuty().model, choose(state, level)) : solve(level)(state);
+        return {
+          solved,
+          frequencyHz: study.frequencyHz,
+          separate: once(() => reduceSeparately(separated(), solved)),
+          ...(isIec && { equivalent: once(() => solveAlike(solved, slowed())) }),
+        };
+      }),
+    );
+    return {
+      scenario,
+      solve: (state, kv) => solve(levelAt(kv))(state),
+      solveDuty: (state, kv) => solveDuty(levelAt(kv))(state),
+    };
   };
+  return { base: solverFor(), scenarios: (study.feeder.scenarios ?? []).map(solverFor) };
 }
 
 function once<R>(compute: () => R): () => R {

@@ -1,6 +1,7 @@
 import type { Impedance, Load, Machine } from '../../shared/schemas/study.ts';
 import { studyFormat } from '../../shared/schemas/study.ts';
 import { constructionLists, impedanceOrConstruction } from './line-shape.ts';
+import { scenario } from './scenario-shape.ts';
 import type { Check } from './shape.ts';
 import {
   between,
@@ -231,6 +232,7 @@ const feeder = object(
     ...constructionLists,
     sections: listOf(object({ id: name, device: name }, loadFigures)),
     circuits: listOf(object({ id: name }, { lineType: oneOf('three-wire', 'four-wire') })),
+    scenarios: listOf(scenario),
   },
 );
 

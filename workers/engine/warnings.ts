@@ -12,7 +12,14 @@ export function listWarnings(study: Study, states: Record<StateName, SolvedCase>
       );
     }
   }
-  for (const { model, topology, networks, openCircuit } of Object.values(states)) {
+  for (const warning of listCaseWarnings(Object.values(states))) warnings.add(warning);
+  return [...warnings];
+}
+
+/** Lists what is amiss in solved cases, each once. */
+export function listCaseWarnings(cases: readonly SolvedCase[]): Set<string> {
+  const warnings = new Set<string>();
+  for (const { model, topology, networks, openCircuit } of cases) {
     for (const node of openCircuit.strandedInverters) {
       const { id } = model.nodes[node]!;
       warnings.add(`A one-phase inverter at ${id} has no way back for its current and is left out.`);
@@ -26,5 +33,5 @@ export function listWarnings(study: Study, states: Record<StateName, SolvedCase>
       }
     }
   }
-  return [...warnings];
+  return warnings;
 }

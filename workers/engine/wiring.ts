@@ -1,5 +1,6 @@
-import type { Model } from './case.ts';
+import type { Branch, Model } from './case.ts';
 import { allPhases } from './case.ts';
+import type { Complex } from './complex.ts';
 
 /*
  * The model as typed arrays, by node and by branch: what walks over a whole network reads these and no objects. Made once
@@ -26,16 +27,23 @@ export type Wiring = {
   /** Whether all branches are alike in that. */
   readonly allGoThrough: boolean;
   readonly anyShift: boolean;
-  /** Branches with a zero-sequence shunt at one end. */
-  readonly earthing: readonly number[];
+  /** Zero-sequence shunts at one end of a branch. */
+  readonly earths: readonly Earth[];
+  /** Self and mutual impedance of lines with one or two phases; empty where there are none. */
+  readonly selfRe: Float64Array;
+  readonly selfIm: Float64Array;
+  readonly mutualRe: Float64Array;
+  readonly mutualIm: Float64Array;
   /** All flags of nodes, branches and switches together. */
   readonly flags: number;
 };
 
+export type Earth = { branch: number; end: 'from' | 'to'; z: Complex };
+
 const known = new WeakMap<Model, Wiring>();
 
 export function wiringOf(model: Model): Wiring {
-  let wiring = known.get(model);
+  let wiring = model.wiring ?? known.get(model);
   if (!wiring) {
     wiring = layOut(model);
     known.set(model, wiring);
@@ -61,7 +69,7 @@ function layOut({ nodes, branches, switches }: Model): Wiring {
   const clockHours = new Int32Array(count);
   const [z1Re, z1Im, z0Re, z0Im] = [0, 1, 2, 3].map(() => new Float64Array(count)) as Float64Array[];
   const zeroGoesThrough = new Uint8Array(count);
-  const earthing: number[] = [];
+  const earths: Earth[] = [];
   let allGoThrough = true;
   let anyShift = false;
   for (let index = 0; index < count; index++) {
@@ -81,7 +89,7 @@ function layOut({ nodes, branches, switches }: Model): Wiring {
       z0Im![index] = path.z.im;
     } else {
       allGoThrough = false;
-      if (path.kind === 'shunt') earthing.push(index);
+      if (path.kind === 'shunt') earths.push({ branch: index, end: path.end, z: path.z });
     }
   }
   return {
@@ -98,9 +106,28 @@ function layOut({ nodes, branches, switches }: Model): Wiring {
     zeroGoesThrough,
     allGoThrough,
     anyShift,
-    earthing,
+    earths,
+    ...layOutPaths(branches),
     flags,
   };
+}
+
+function layOutPaths(branches: readonly Branch[]) {
+  const count = branches.some(({ phases }) => phases !== allPhases) ? branches.length : 0;
+  const [selfRe, selfIm, mutualRe, mutualIm] = [0, 1, 2, 3].map(() => new Float64Array(count)) as [
+    Float64Array,
+    Float64Array,
+    Float64Array,
+    Float64Array,
+  ];
+  for (let index = 0; index < count; index++) {
+    const { self, mutual } = branches[index]!;
+    selfRe[index] = self.re;
+    selfIm[index] = self.im;
+    mutualRe[index] = mutual.re;
+    mutualIm[index] = mutual.im;
+  }
+  return { selfRe, selfIm, mutualRe, mutualIm };
 }
 
 function flagsOf({ ofProject, companion }: { ofProject: boolean; companion: boolean }): number {

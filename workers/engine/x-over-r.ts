@@ -4,12 +4,13 @@ import { largestXr, ratioOf } from './asymmetry.ts';
 import type { Model, Shunt } from './case.ts';
 import { allPhases } from './case.ts';
 import type { Complex } from './complex.ts';
-import { add, divide, multiply, scale, subtract, sum } from './complex.ts';
+import { add, complexArray, divide, multiply, scale, subtract, sum } from './complex.ts';
 import type { FaultPoint } from './faults.ts';
 import { changeImpedances, solveAlike } from './solve-alike.ts';
-import type { SolvedCase } from './solve-case.ts';
+import type { SolvedCase, TheveninCase } from './solve-case.ts';
 import { findFaultPoint } from './solve-case.ts';
 import { eachElement } from './study-elements.ts';
+import { wiringOf } from './wiring.ts';
 
 /*
  * X/R at a fault. The direct current of a network with several paths fades with several time constants; X over R of
@@ -21,29 +22,31 @@ import { eachElement } from './study-elements.ts';
 /** The same network twice, as resistances alone and as reactances alone. */
 export type SeparateModels = { resistances: Model; reactances: Model };
 
-export type SeparateCases = { resistances: SolvedCase; reactances: SolvedCase };
+export type SeparateCases = { resistances: TheveninCase; reactances: TheveninCase };
 
 /** Makes the two networks of the model of a study. */
 export function separateModels(study: Study, model: Model): SeparateModels {
-  const complete = { ...model, machines: completeResistances(study, model) };
+  const complete = { ...model, wiring: wiringOf(model), machines: completeResistances(study, model) };
+  const none = () => 0;
   return {
     resistances: changeImpedances(complete, {
       // A resistance of zero would short-circuit the network, as would a reactance of zero.
-      network: ({ re, im }) => ({ re: Math.max(re, Math.abs(im) / largestXr), im: 0 }),
-      path: ({ re }) => ({ re, im: 0 }),
+      network: { re: (re, im) => Math.max(re, Math.abs(im) / largestXr), im: none },
+      path: { re: (re) => re, im: none },
     }),
     reactances: changeImpedances(complete, {
-      network: ({ re, im }) => ({ re: 0, im: Math.abs(im) * largestXr < re ? re / largestXr : im }),
-      path: ({ im }) => ({ re: 0, im }),
+      network: { re: none, im: (re, im) => (Math.abs(im) * largestXr < re ? re / largestXr : im) },
+      path: { re: none, im: (_, im) => im },
     }),
   };
 }
 
 /** Solves both networks of the model of a case as they are in that case. */
 export function reduceSeparately(models: SeparateModels, solved: SolvedCase): SeparateCases {
+  const spare = complexArray(solved.topology.busCount);
   return {
-    resistances: solveAlike(solved, models.resistances),
-    reactances: solveAlike(solved, models.reactances),
+    resistances: solveAlike(solved, models.resistances, spare),
+    reactances: solveAlike(solved, models.reactances, spare),
   };
 }
 

@@ -1,26 +1,29 @@
 import type { Finding } from '../../../shared/schemas/findings.ts';
 import type { Device } from '../../../shared/schemas/study.ts';
 import type { Model } from '../case.ts';
+import { isInService } from '../case.ts';
 import type { CountedFault } from '../device-asymmetry.ts';
 import { findCountedFault } from '../device-asymmetry.ts';
 import { findTestXr, isAsymmetrical } from '../rating-basis.ts';
 import type { SolvedCase } from '../solve-case.ts';
-import { solveCase } from '../solve-case.ts';
+import { withoutInverters } from '../solve-case.ts';
 import type { DutyState } from '../state-solver.ts';
 import { boundInverterRaise, findInverterRaise } from './inverter-raise.ts';
 import { answer, findBrokenLimit, judge } from './judge.ts';
+import type { OperatingCase } from './operating-cases.ts';
+import { describeDeciding } from './operating-cases.ts';
 import type { Screening } from './screening.ts';
 import { lacksGroundSource } from './screening.ts';
 
 type Rated = Device & { interruptingKa: number };
 
 /** The fault that counts most against a rating, inverter currents added, and that in percent of the rating. */
-type Loading = CountedFault & { percent: number };
+type Loading = CountedFault & { percent: number; operating: OperatingCase };
 
 /**
  * Does everything that interrupts faults keep its margin?
  * The whole fault current at each device over its rating, with the project, and without it where that is more; above the
- * X/R that the rating was tested at it counts for more than it is. One finding for the worst device, one for each further
+ * X/R that the rating was tested at it counts for more than it is. Of all operating cases the worst counts. One finding for the worst device, one for each further
  * device outside, one for each without a rating.
  */
 export function answerInterruptingDuty(screening: Screening): Finding[] {
@@ -47,8 +50,8 @@ const mostExact = 64;
 
 function judgeRated(screening: Screening, devices: readonly Rated[]): Finding[] {
   const rule = screening.ruleSet.rules['interrupting-duty'];
-  const after = loadingsIn(screening, 'after');
-  const before = loadingsIn(screening, 'before');
+  const after = worstLoadings(screening, 'after');
+  const before = worstLoadings(screening, 'before');
   const bounded = devices
     .map((device) => ({ device, bound: after.bound(device).percent }))
     .sort((p, q) => q.bound - p.bound);
@@ -80,6 +83,7 @@ function judgeDevice(
     `${decisive.amperes.toFixed(0)} A available against a rating of ${device.interruptingKa} kA.`,
     ...describeAsymmetry(screening, device, decisive),
   ];
+  notes.push(...describeDeciding(screening.cases, decisive.operating));
   if (decisive === before) notes.push('It is more without the project, and that decides.');
   if (screening.study.options?.motorLoad) notes.push('Motors in the load are counted.');
   if (measure === 'bound') notes.push('Inverter currents are counted at a bound of their sum.');
@@ -117,19 +121,41 @@ function endOf(model: Model, device: Device) {
   return { node, kv: model.nodes[node]!.kv };
 }
 
+/** Measures a device in every operating case in which its branch is in service, and takes the worst. */
+function worstLoadings(screening: Screening, state: DutyState) {
+  const { model, cases } = screening;
+  const loadings = cases.map((operating) => loadingsIn(model, operating, state));
+  const worst = (device: Rated, kind: 'exact' | 'bound'): Loading => {
+    const branch = model.branches[model.branchIndex.get(device.branch)!]!;
+    const { kv } = endOf(model, device);
+    return loadings
+      .filter((_, place) => {
+        if (place === 0) return true;
+        const { choice } = cases[place]!.solver.solve(state, kv);
+        return isInService(model, choice, branch);
+      })
+      .map((measure) => measure[kind](device))
+      .reduce((p, q) => (q.percent > p.percent * (1 + 1e-9) ? q : p));
+  };
+  return {
+    exact: (device: Rated) => worst(device, 'exact'),
+    bound: (device: Rated) => worst(device, 'bound'),
+  };
+}
+
 /**
  * Measures a device against its rating: the larger of the phasor result and the current without inverters with theirs
  * added in magnitude, or with a bound of those.
  */
-function loadingsIn({ model, solver }: Screening, state: DutyState) {
+function loadingsIn(model: Model, operating: OperatingCase, state: DutyState) {
   const prepared = new Map<SolvedCase, ReturnType<typeof prepare>>();
   const prepare = (solved: SolvedCase) => ({
-    bare: solveCase(solved.model, { ...solved.choice, inverters: 'none' }),
+    bare: withoutInverters(solved),
     boundRaise: boundInverterRaise(solved),
   });
   const measure = (device: Rated, kind: 'exact' | 'bound'): Loading => {
     const { node, kv } = endOf(model, device);
-    const duty = solver.solveDuty(state, kv);
+    const duty = operating.solver.solveDuty(state, kv);
     let ready = prepared.get(duty.solved);
     if (!ready) prepared.set(duty.solved, (ready = prepare(duty.solved)));
     const raise = kind === 'exact' ? findInverterRaise(duty.solved, node) : ready.boundRaise(node);
@@ -140,6 +166,7 @@ function loadingsIn({ model, solver }: Screening, state: DutyState) {
       phasors.amperes * phasors.factor > magnitudes.amperes * magnitudes.factor ? phasors : magnitudes;
     return {
       ...decisive,
+      operating,
       percent: ((decisive.amperes * decisive.factor) / (device.interruptingKa * 1000)) * 100,
     };
   };

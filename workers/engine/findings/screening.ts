@@ -2,8 +2,8 @@ import type { RuleSet } from '../../../shared/schemas/rule-sets.ts';
 import type { Project, Study } from '../../../shared/schemas/study.ts';
 import type { Model } from '../case.ts';
 import type { SolvedCase } from '../solve-case.ts';
-import type { StateSolver } from '../state-solver.ts';
 import type { StateName } from '../states.ts';
+import type { OperatingCase } from './operating-cases.ts';
 import type { Upstream } from './upstream.ts';
 
 /** What every question may ask about. */
@@ -12,11 +12,13 @@ export type Screening = {
   project: Project;
   ruleSet: RuleSet;
   model: Model;
-  /** The states at the voltage of the point of interconnection; `solver` has them for any other. */
+  /** The states of the model as it stands, at the voltage of the point of interconnection. */
   states: Record<StateName, SolvedCase>;
-  solver: StateSolver;
+  /** The model as it stands, first, and all scenarios: their solvers have the states at any voltage. */
+  cases: readonly OperatingCase[];
   /** Index of the point of interconnection. */
   poi: number;
+  /** Of the model as it stands. */
   upstream: Upstream;
 };
 

@@ -5,35 +5,58 @@ import type { FaultPoint } from '../faults.ts';
 import { projectKva } from '../project-size.ts';
 import { findFaultPoint } from '../solve-case.ts';
 import { answer, judge } from './judge.ts';
+import type { OperatingCase } from './operating-cases.ts';
+import { describeDeciding } from './operating-cases.ts';
 import type { Screening } from './screening.ts';
 import { findServedArea } from './upstream.ts';
+
+/** The grid's strength in one operating case, and what leans on it besides the project. */
+type Measurement = { operating: OperatingCase; kva: number; othersKva: number };
 
 /**
  * Is the grid strong enough here for the project?
  * kV²/|Z1| from the weakest source, without inverters or machines, over the larger of the project and all inverters at
- * the place with it.
+ * the place with it; the operating case in which that is least decides.
  */
 export function answerShortCircuitRatio(screening: Screening): Finding[] {
-  const { study, project, model, states, poi } = screening;
-  const point = findFaultPoint(states.minimum, poi);
+  const { project } = screening;
   const own = projectKva(project);
-  if (!point || own === 0) {
-    const note = point ? 'The project has no generator.' : 'No source feeds the point of interconnection.';
-    return [answer(screening, 'short-circuit-ratio', point ? 'not-applicable' : 'needs-data', { note })];
+  const measured = screening.cases.flatMap((operating) => measure(screening, operating));
+  if (measured.length === 0 || own === 0) {
+    const isFed = measured.length > 0;
+    const note = isFed ? 'The project has no generator.' : 'No source feeds the point of interconnection.';
+    return [answer(screening, 'short-circuit-ratio', isFed ? 'not-applicable' : 'needs-data', { note })];
   }
-  const kva = shortCircuitKva(point, model.baseMva, screening);
-  const area = findServedArea(screening.upstream, model, poi);
-  const others = (study.feeder.inverters ?? []).filter(({ node }) => area[model.nodeIndex.get(node)!]);
-  const othersKva = others.reduce((total, inverter) => total + inverter.kva, 0);
+  const ratioOf = ({ kva, othersKva }: Measurement) => kva / (own + othersKva);
+  const worst = measured.reduce((p, q) => (ratioOf(q) < ratioOf(p) * (1 - 1e-9) ? q : p));
+  const { kva, othersKva, operating } = worst;
   const besides = othersKva > 0 ? ` and ${othersKva} kVA of inverters at the same place` : '';
+  const before = Math.min(...measured.map((each) => each.kva / each.othersKva));
+  const notes = [
+    `${(kva / 1000).toFixed(1)} MVA from the weakest source, over ${own} kVA of the project${besides}.`,
+    ...describeDeciding(screening.cases, operating),
+  ];
   return [
     judge(screening, 'short-circuit-ratio', {
       element: project.node,
-      value: kva / (own + othersKva),
-      ...(othersKva > 0 ? { before: kva / othersKva } : {}),
-      note: `${(kva / 1000).toFixed(1)} MVA from the weakest source, over ${own} kVA of the project${besides}.`,
+      value: ratioOf(worst),
+      ...(before < Infinity ? { before } : {}),
+      note: notes.join(' '),
     }),
   ];
+}
+
+/** Measures one operating case; nothing where no source feeds the place in it. */
+function measure(screening: Screening, operating: OperatingCase): Measurement[] {
+  const { study, model, poi } = screening;
+  const solved = operating.solver.solve('minimum', model.nodes[poi]!.kv);
+  const point = findFaultPoint(solved, poi);
+  if (!point) return [];
+  const area = findServedArea(operating.upstream, model, poi);
+  const othersKva = (study.feeder.inverters ?? [])
+    .filter((inverter) => area[model.nodeIndex.get(inverter.node)!] && !solved.choice.out?.has(inverter.id))
+    .reduce((total, inverter) => total + inverter.kva, 0);
+  return [{ operating, kva: shortCircuitKva(point, model.baseMva, screening), othersKva }];
 }
 
 /** Three-phase fault power at nominal voltage; on a lateral that of the loop from line to ground. */

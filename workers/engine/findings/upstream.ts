@@ -1,6 +1,6 @@
 import type { Device, Study } from '../../../shared/schemas/study.ts';
 import type { CaseChoice, Model, Opening } from '../case.ts';
-import { isPresent } from '../case.ts';
+import { isClosed, isInService, isPresent } from '../case.ts';
 import type { Graph } from '../graph.ts';
 import { buildGraph } from '../graph.ts';
 
@@ -23,20 +23,20 @@ export function traceUpstream(model: Model, choice: CaseChoice, node: number): U
   const to: number[] = [];
   const branchOfEdge: number[] = [];
   model.branches.forEach((branch, index) => {
-    if (!isPresent(choice, branch)) return;
+    if (!isInService(model, choice, branch)) return;
     from.push(branch.from);
     to.push(branch.to);
     branchOfEdge.push(index);
   });
   for (const link of model.switches) {
-    if (!link.closed || !isPresent(choice, link)) continue;
+    if (!isClosed(choice, link) || !isInService(model, choice, link)) continue;
     from.push(link.from);
     to.push(link.to);
     branchOfEdge.push(-1);
   }
   const graph = buildGraph(model.nodes.length, from, to);
   const isSource = new Uint8Array(model.nodes.length);
-  for (const source of model.sources) isSource[source.max.node] = 1;
+  for (const { max } of model.sources) if (isPresent(choice, max)) isSource[max.node] = 1;
 
   const cameFrom = new Int32Array(model.nodes.length).fill(-1);
   const cameBy = new Int32Array(model.nodes.length).fill(-1);
