@@ -1,7 +1,6 @@
 import { describe, expect, it } from 'vitest';
-import { checkStudy } from '../../../workers/engine/read-study.ts';
 import type { Change } from './spoiling.ts';
-import { spoil } from './spoiling.ts';
+import { linesOf } from './spoiling.ts';
 
 /* Every kind of problem that a study file can have, with the line that it gets: one problem makes one line. */
 
@@ -186,15 +185,6 @@ const cases: [kind: string, Change, line: string][] = [
     '/feeder/lines/0/km: got 1e+300, expected a number from 1e-15 to 1e+15',
   ],
 ];
-
-/** JSON cannot write Infinity, but it can read 1e999; so the parsed file is what is checked here. */
-function linesOf(change: Change): string {
-  const checked = checkStudy(spoil(change));
-  const problems = 'problems' in checked ? checked.problems.first : [];
-  return problems
-    .map(({ pointer, got, expected }) => `${pointer}: got ${got}, expected ${expected}`)
-    .join('\n');
-}
 
 describe('Each problem of a study file', () => {
   it.each(cases)('has its place, what is there and what was expected: %s', (_, change, expected) => {

@@ -1,7 +1,6 @@
 import { describe, expect, it } from 'vitest';
-import { checkStudy } from '../../../workers/engine/read-study.ts';
 import type { Change } from './spoiling.ts';
-import { spoil } from './spoiling.ts';
+import { linesOf } from './spoiling.ts';
 
 /* What can be wrong with the operating cases of a study file, with the line that it gets. */
 
@@ -133,14 +132,6 @@ const cases: [kind: string, Change, line: string][] = [
     '/feeder/scenarios/0: got AB at /feeder/nodes/6/phases in scenario "turned", expected phases that its supply has: A',
   ],
 ];
-
-function linesOf(change: Change): string {
-  const checked = checkStudy(spoil(change));
-  const problems = 'problems' in checked ? checked.problems.first : [];
-  return problems
-    .map(({ pointer, got, expected }) => `${pointer}: got ${got}, expected ${expected}`)
-    .join('\n');
-}
 
 describe('Each problem of an operating case', () => {
   it.each(cases)('has its place, what is there and what was expected: %s', (_, change, expected) => {

@@ -1,5 +1,7 @@
 import { readFileSync } from 'node:fs';
 import { join } from 'node:path';
+import { listProblems } from '../../../workers/engine/problems.ts';
+import { checkStudy } from '../../../workers/engine/read-study.ts';
 import { fixtures } from './cases.ts';
 
 /* A sound study file, and ways to spoil it. */
@@ -22,6 +24,15 @@ export function spoil({ set = {}, remove = [] }: Change): unknown {
     else if (holder) delete holder[key];
   }
   return file;
+}
+
+/**
+ * The lines that a spoilt file is answered with, as the command line prints them; '' for a sound one. JSON cannot write
+ * Infinity, but it can read 1e999; so the parsed file is what is checked.
+ */
+export function linesOf(change: Change): string {
+  const checked = checkStudy(spoil(change));
+  return 'problems' in checked ? listProblems(checked.problems).join('\n') : '';
 }
 
 const likeJson = { enumerable: true, configurable: true, writable: true };
