@@ -190,8 +190,12 @@ CREATE TABLE `finding_waivers` (
   `reason` text NOT NULL,
   `waived_by` bigint(20) unsigned NOT NULL,
   `waived_at` datetime(3) NOT NULL,
+  `agreed_by` bigint(20) unsigned DEFAULT NULL,
+  `agreed_at` datetime(3) DEFAULT NULL,
   PRIMARY KEY (`run_id`,`question`,`element`),
   KEY `finding_waivers_by` (`waived_by`),
+  KEY `finding_waivers_agreed` (`agreed_by`),
+  CONSTRAINT `finding_waivers_agreed` FOREIGN KEY (`agreed_by`) REFERENCES `users` (`id`),
   CONSTRAINT `finding_waivers_by` FOREIGN KEY (`waived_by`) REFERENCES `users` (`id`),
   CONSTRAINT `finding_waivers_of` FOREIGN KEY (`run_id`) REFERENCES `runs` (`id`)
 ) ENGINE=InnoDB DEFAULT CHARSET=utf8mb4 COLLATE=utf8mb4_unicode_ci;
@@ -230,6 +234,32 @@ CREATE TABLE `model_nodes` (
   `place` point NOT NULL,
   PRIMARY KEY (`version_id`,`node_id`),
   CONSTRAINT `model_nodes_version` FOREIGN KEY (`version_id`) REFERENCES `model_versions` (`id`)
+) ENGINE=InnoDB DEFAULT CHARSET=utf8mb4 COLLATE=utf8mb4_unicode_ci;
+
+CREATE TABLE `model_rooms` (
+  `id` bigint(20) unsigned NOT NULL AUTO_INCREMENT,
+  `public_id` varchar(32) CHARACTER SET utf8mb4 COLLATE utf8mb4_bin NOT NULL,
+  `model_id` bigint(20) unsigned NOT NULL,
+  `basis` longtext NOT NULL,
+  `state` varchar(20) NOT NULL,
+  `attempt` int(10) unsigned NOT NULL DEFAULT 0,
+  `token` binary(16) DEFAULT NULL,
+  `lease_until` datetime(3) DEFAULT NULL,
+  `percent` int(10) unsigned NOT NULL DEFAULT 0,
+  `room` longtext DEFAULT NULL,
+  `error` text DEFAULT NULL,
+  `asked_by` bigint(20) unsigned NOT NULL,
+  `asked_at` datetime(3) NOT NULL,
+  `queued_at` datetime(3) NOT NULL,
+  `finished_at` datetime(3) DEFAULT NULL,
+  PRIMARY KEY (`id`),
+  UNIQUE KEY `public_id` (`public_id`),
+  KEY `model_rooms_model` (`model_id`,`id`),
+  KEY `model_rooms_state` (`state`,`queued_at`),
+  KEY `model_rooms_by` (`asked_by`),
+  CONSTRAINT `model_rooms_by` FOREIGN KEY (`asked_by`) REFERENCES `users` (`id`),
+  CONSTRAINT `model_rooms_of` FOREIGN KEY (`model_id`) REFERENCES `network_models` (`id`),
+  CONSTRAINT `model_rooms_state_known` CHECK (`state` in ('queued','running','finished','failed'))
 ) ENGINE=InnoDB DEFAULT CHARSET=utf8mb4 COLLATE=utf8mb4_unicode_ci;
 
 CREATE TABLE `model_versions` (
@@ -296,6 +326,31 @@ CREATE TABLE `outbox` (
   CONSTRAINT `outbox_state` CHECK (`state` in ('waiting','sending','sent','parked'))
 ) ENGINE=InnoDB DEFAULT CHARSET=utf8mb4 COLLATE=utf8mb4_unicode_ci;
 
+CREATE TABLE `pre_application_reports` (
+  `id` bigint(20) unsigned NOT NULL AUTO_INCREMENT,
+  `public_id` varchar(32) CHARACTER SET utf8mb4 COLLATE utf8mb4_bin NOT NULL,
+  `organisation_id` bigint(20) unsigned NOT NULL,
+  `requested_by` bigint(20) unsigned NOT NULL,
+  `requested_at` datetime(3) NOT NULL,
+  `request` longtext NOT NULL,
+  `model_version_id` bigint(20) unsigned NOT NULL,
+  `node_id` varchar(120) CHARACTER SET utf8mb4 COLLATE utf8mb4_bin NOT NULL,
+  `circuit` varchar(60) CHARACTER SET utf8mb4 COLLATE utf8mb4_bin NOT NULL,
+  `rule_set_version_id` bigint(20) unsigned NOT NULL,
+  `ahead_revision_ids` longtext NOT NULL,
+  `figures` longtext NOT NULL,
+  PRIMARY KEY (`id`),
+  UNIQUE KEY `public_id` (`public_id`),
+  KEY `pre_application_reports_of` (`organisation_id`,`id`),
+  KEY `pre_application_reports_person` (`requested_by`),
+  KEY `pre_application_reports_model` (`model_version_id`),
+  KEY `pre_application_reports_rules` (`rule_set_version_id`),
+  CONSTRAINT `pre_application_reports_model` FOREIGN KEY (`model_version_id`) REFERENCES `model_versions` (`id`),
+  CONSTRAINT `pre_application_reports_organisation` FOREIGN KEY (`organisation_id`) REFERENCES `organisations` (`id`),
+  CONSTRAINT `pre_application_reports_person` FOREIGN KEY (`requested_by`) REFERENCES `users` (`id`),
+  CONSTRAINT `pre_application_reports_rules` FOREIGN KEY (`rule_set_version_id`) REFERENCES `rule_set_versions` (`id`)
+) ENGINE=InnoDB DEFAULT CHARSET=utf8mb4 COLLATE=utf8mb4_unicode_ci;
+
 CREATE TABLE `queue_entries` (
   `model_id` bigint(20) unsigned NOT NULL,
   `position` int(10) unsigned NOT NULL,
@@ -324,18 +379,36 @@ CREATE TABLE `revision_files` (
   CONSTRAINT `revision_files_revision` FOREIGN KEY (`revision_id`) REFERENCES `application_revisions` (`id`)
 ) ENGINE=InnoDB DEFAULT CHARSET=utf8mb4 COLLATE=utf8mb4_unicode_ci;
 
+CREATE TABLE `rule_confirmations` (
+  `rule_set_version_id` bigint(20) unsigned NOT NULL,
+  `question` varchar(80) CHARACTER SET utf8mb4 COLLATE utf8mb4_bin NOT NULL,
+  `confirmed_by` bigint(20) unsigned DEFAULT NULL,
+  `confirmed_at` datetime(3) NOT NULL,
+  PRIMARY KEY (`rule_set_version_id`,`question`),
+  KEY `rule_confirmations_by` (`confirmed_by`),
+  CONSTRAINT `rule_confirmations_by` FOREIGN KEY (`confirmed_by`) REFERENCES `users` (`id`),
+  CONSTRAINT `rule_confirmations_of` FOREIGN KEY (`rule_set_version_id`) REFERENCES `rule_set_versions` (`id`) ON DELETE CASCADE
+) ENGINE=InnoDB DEFAULT CHARSET=utf8mb4 COLLATE=utf8mb4_unicode_ci;
+
 CREATE TABLE `rule_set_versions` (
   `id` bigint(20) unsigned NOT NULL AUTO_INCREMENT,
   `code` varchar(40) CHARACTER SET utf8mb4 COLLATE utf8mb4_bin NOT NULL,
   `number` int(10) unsigned NOT NULL,
-  `valid_from` date NOT NULL,
+  `valid_from` date DEFAULT NULL,
   `content` longtext NOT NULL,
   `sha256` binary(32) NOT NULL,
   `confirmed_by` bigint(20) unsigned DEFAULT NULL,
   `confirmed_at` datetime(3) DEFAULT NULL,
   `first_used_at` datetime(3) DEFAULT NULL,
+  `state` varchar(20) NOT NULL DEFAULT 'published',
+  `version` int(10) unsigned NOT NULL DEFAULT 1,
+  `edited_by` bigint(20) unsigned DEFAULT NULL,
+  `edited_at` datetime(3) DEFAULT NULL,
+  `published_by` bigint(20) unsigned DEFAULT NULL,
+  `published_at` datetime(3) DEFAULT NULL,
   PRIMARY KEY (`id`),
-  UNIQUE KEY `rule_set_versions_number` (`code`,`number`)
+  UNIQUE KEY `rule_set_versions_number` (`code`,`number`),
+  CONSTRAINT `rule_set_versions_state` CHECK (`state` = 'draft' or `state` = 'published' and `valid_from` is not null)
 ) ENGINE=InnoDB DEFAULT CHARSET=utf8mb4 COLLATE=utf8mb4_unicode_ci;
 
 CREATE TABLE `run_findings` (
@@ -443,6 +516,34 @@ CREATE TABLE `users` (
   CONSTRAINT `users_applicant_belongs` CHECK (`role` <> 'applicant' or `organisation_id` is not null)
 ) ENGINE=InnoDB DEFAULT CHARSET=utf8mb4 COLLATE=utf8mb4_unicode_ci;
 
+CREATE TABLE `variants` (
+  `id` bigint(20) unsigned NOT NULL AUTO_INCREMENT,
+  `public_id` varchar(32) CHARACTER SET utf8mb4 COLLATE utf8mb4_bin NOT NULL,
+  `application_id` bigint(20) unsigned NOT NULL,
+  `run_id` bigint(20) unsigned NOT NULL,
+  `name` varchar(120) NOT NULL,
+  `changes` longtext NOT NULL,
+  `findings` longtext NOT NULL,
+  `kept_by` bigint(20) unsigned NOT NULL,
+  `kept_at` datetime(3) NOT NULL,
+  PRIMARY KEY (`id`),
+  UNIQUE KEY `public_id` (`public_id`),
+  UNIQUE KEY `variants_name` (`application_id`,`name`),
+  KEY `variants_run` (`run_id`),
+  KEY `variants_by` (`kept_by`),
+  CONSTRAINT `variants_by` FOREIGN KEY (`kept_by`) REFERENCES `users` (`id`),
+  CONSTRAINT `variants_of` FOREIGN KEY (`application_id`) REFERENCES `applications` (`id`),
+  CONSTRAINT `variants_run` FOREIGN KEY (`run_id`) REFERENCES `runs` (`id`)
+) ENGINE=InnoDB DEFAULT CHARSET=utf8mb4 COLLATE=utf8mb4_unicode_ci;
+
 CREATE TRIGGER audit_entries_no_update BEFORE UPDATE ON audit_entries FOR EACH ROW SIGNAL SQLSTATE '45000' SET MESSAGE_TEXT = 'audit entries are never changed';
 
 CREATE TRIGGER audit_entries_no_delete BEFORE DELETE ON audit_entries FOR EACH ROW SIGNAL SQLSTATE '45000' SET MESSAGE_TEXT = 'audit entries are never deleted';
+
+CREATE TRIGGER rule_set_versions_kept BEFORE UPDATE ON rule_set_versions FOR EACH ROW IF OLD.state = 'published' AND NOT (BINARY NEW.content = BINARY OLD.content
+      AND NEW.sha256 = OLD.sha256 AND NEW.state = OLD.state AND NEW.valid_from = OLD.valid_from
+      AND NEW.code = OLD.code AND NEW.number = OLD.number)
+    THEN SIGNAL SQLSTATE '45000' SET MESSAGE_TEXT = 'published rules are never changed'; END IF;
+
+CREATE TRIGGER rule_set_versions_used BEFORE DELETE ON rule_set_versions FOR EACH ROW IF OLD.first_used_at IS NOT NULL
+    THEN SIGNAL SQLSTATE '45000' SET MESSAGE_TEXT = 'rules that were used are never deleted'; END IF;

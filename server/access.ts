@@ -7,7 +7,7 @@ import { roles, type Role } from '../shared/schemas/sessions.ts';
 export type Reach = 'none' | 'own' | 'any';
 
 /** What the `:id` in a route's path names; services/ownership.ts finds whose it is. */
-export type Subject = 'application' | 'run' | 'file' | 'message';
+export type Subject = 'application' | 'run' | 'file' | 'message' | 'report';
 
 export interface Rule {
   /** Allowed to people who are not signed in, too. */
@@ -46,7 +46,9 @@ export const access = {
   'equipment.list': { roles: everyone },
   'events.listen': { roles: everyone },
   'models.read': { roles: staffOnly },
-  'rule-sets.list': { roles: staffOnly },
+  'rooms.ask': { roles: { ...nobody, reviewer: 'any', planner: 'any' } },
+  'rule-sets.read': { roles: staffOnly },
+  'rule-sets.edit': { roles: administrators },
 
   'applications.list': { roles: ownOrStaff },
   'applications.start': { roles: applicants },
@@ -59,13 +61,19 @@ export const access = {
   'application.decide': { subject: 'application', roles: reviewers },
   'application.screen': { subject: 'application', roles: reviewers },
   'application.runs': { subject: 'application', roles: staffOnly },
+  'application.try': { subject: 'application', roles: reviewers },
   'application.audit': {
     subject: 'application',
     roles: { ...nobody, reviewer: 'any', administrator: 'any', auditor: 'any' },
   },
 
   'run.read': { subject: 'run', roles: ownOrStaff },
-  'run.waive': { subject: 'run', roles: reviewers },
+  'run.try': { subject: 'run', roles: reviewers },
+  // Each rule says which of these may set its findings aside.
+  'run.waive': {
+    subject: 'run',
+    roles: { ...nobody, reviewer: 'any', planner: 'any', administrator: 'any' },
+  },
   'run.download': { subject: 'run', roles: staffOnly },
   'run.retry': { subject: 'run', roles: administrators },
 
@@ -77,6 +85,10 @@ export const access = {
 
   'mailbox.list': { demoOnly: true, roles: ownOrStaff },
   'mailbox.read': { demoOnly: true, subject: 'message', roles: ownOrStaff },
+
+  'reports.list': { roles: ownOrStaff },
+  'reports.request': { roles: applicants },
+  'report.read': { subject: 'report', roles: ownOrStaff },
 
   'people.list': { roles: { ...nobody, administrator: 'any', auditor: 'any' } },
 } as const satisfies Record<string, Rule>;

@@ -2,6 +2,7 @@ import type { Logger } from 'pino';
 import type { Database } from '../db/connection.ts';
 import type { LiveEvent } from '../shared/schemas/events.ts';
 import type { Role } from '../shared/schemas/sessions.ts';
+import type { Compute } from './compute.ts';
 import type { Config } from './config.ts';
 
 /** The signed-in person in whose name something is done. */
@@ -29,6 +30,7 @@ export interface SignedInContext extends Context {
 /** What the server needs of the queue; called after commit, never inside a transaction. */
 export interface RunQueue {
   enqueue(runId: number, attempt: number): Promise<void>;
+  enqueueRoom(roomId: number, attempt: number): Promise<void>;
 }
 
 /** The live events that workers and services publish; `subscribe` returns the way to end it. */
@@ -44,5 +46,7 @@ export interface Deps {
   config: Config;
   queue: RunQueue;
   events: LiveEvents;
+  /** For what somebody waits for: trials, remedies. Runs are the worker's. */
+  compute: Pick<Compute, 'ask'>;
   log: Logger;
 }

@@ -7,9 +7,8 @@ import type { RedisSettings } from './config.ts';
 import type { RunQueue } from './context.ts';
 import { redisOptions } from './redis.ts';
 
-interface RunJob {
-  runId: number;
-}
+/** A run to screen, or the room of a model to work out. */
+type DeskJob = { runId: number } | { roomId: number };
 
 /** The sweep enqueues what did not get through: nobody waits for a Redis that is away. */
 const enqueueWaitMs = 2000;
@@ -20,11 +19,11 @@ const closeWaitMs = 5000;
 const retryMs = 1000;
 
 /**
- * Jobs carry a run's id and nothing else: the row is the truth. Retries with backoff are the row's too
+ * Jobs carry the id of a run or a room and nothing else: the row is the truth. Retries with backoff are the row's too
  * (`next_attempt_at`, read by the sweep), so that nothing here needs bee-queue's delayed jobs or its events.
  */
-function makeQueue(settings: RedisSettings, log: Logger, isWorker: boolean): Queue<RunJob> {
-  const queue = new Queue<RunJob>('runs', {
+function makeQueue(settings: RedisSettings, log: Logger, isWorker: boolean): Queue<DeskJob> {
+  const queue = new Queue<DeskJob>('runs', {
     redis: redisOptions(settings),
     prefix: `${settings.prefix}:queue`,
     isWorker,
@@ -42,7 +41,7 @@ function makeQueue(settings: RedisSettings, log: Logger, isWorker: boolean): Que
 }
 
 /** A Redis that was started again knows none of the scripts that bee-queue calls by hash. */
-async function loadScriptsAtEachConnect(queue: Queue<RunJob>, log: Logger): Promise<void> {
+async function loadScriptsAtEachConnect(queue: Queue<DeskJob>, log: Logger): Promise<void> {
   await queue.ready();
   const { client } = queue as unknown as { client: RedisClient };
   client.on('ready', () => {
@@ -56,9 +55,10 @@ function isScriptMissing(error: unknown): boolean {
   return error instanceof Error && error.message.startsWith('NOSCRIPT');
 }
 
-async function saveJob(queue: Queue<RunJob>, runId: number, attempt: number): Promise<void> {
+async function saveJob(queue: Queue<DeskJob>, job: DeskJob, attempt: number): Promise<void> {
   // A second job for the same attempt is the same job.
-  const save = () => queue.createJob({ runId }).setId(`${runId}:${attempt}`).save();
+  const id = 'runId' in job ? `${job.runId}:${attempt}` : `room-${job.roomId}:${attempt}`;
+  const save = () => queue.createJob(job).setId(id).save();
   try {
     await save();
   } catch (error) {
@@ -82,22 +82,25 @@ function within<T>(work: Promise<T>, milliseconds: number): Promise<T> {
 export interface OpenQueue extends RunQueue {
   /** Whether Redis took it. */
   tryEnqueue(runId: number, attempt: number): Promise<boolean>;
+  tryEnqueueRoom(roomId: number, attempt: number): Promise<boolean>;
   close(): Promise<void>;
 }
 
-function open(queue: Queue<RunJob>, log: Logger): OpenQueue {
-  async function tryEnqueue(runId: number, attempt: number): Promise<boolean> {
+function open(queue: Queue<DeskJob>, log: Logger): OpenQueue {
+  async function tryJob(job: DeskJob, attempt: number): Promise<boolean> {
     try {
-      await within(saveJob(queue, runId, attempt), enqueueWaitMs);
+      await within(saveJob(queue, job, attempt), enqueueWaitMs);
       return true;
     } catch (error) {
-      log.warn({ err: error, runId }, 'Not enqueued; the sweep will find the run');
+      log.warn({ err: error, ...job }, 'Not enqueued; the sweep will find it');
       return false;
     }
   }
   return {
-    tryEnqueue,
-    enqueue: async (runId, attempt) => void (await tryEnqueue(runId, attempt)),
+    tryEnqueue: (runId, attempt) => tryJob({ runId }, attempt),
+    tryEnqueueRoom: (roomId, attempt) => tryJob({ roomId }, attempt),
+    enqueue: async (runId, attempt) => void (await tryJob({ runId }, attempt)),
+    enqueueRoom: async (roomId, attempt) => void (await tryJob({ roomId }, attempt)),
     async close() {
       // Not while it connects: it would wait for a Redis that may be away. The sockets end with the process.
       await within(queue.close(closeWaitMs), closeWaitMs + retryMs).catch((error: unknown) =>
@@ -117,9 +120,9 @@ export function openQueue(settings: RedisSettings, log: Logger): OpenQueue {
  * moment: so that look is first taken here, until it succeeds.
  */
 async function startWorking(
-  queue: Queue<RunJob>,
+  queue: Queue<DeskJob>,
   log: Logger,
-  work: (runId: number) => Promise<void>,
+  work: (job: DeskJob) => Promise<void>,
 ): Promise<void> {
   await queue.ready();
   while (!queue.paused) {
@@ -132,7 +135,7 @@ async function startWorking(
     }
   }
   if (queue.paused) return;
-  queue.process(1, (job: Queue.Job<RunJob>) => work(job.data.runId));
+  queue.process(1, (job: Queue.Job<DeskJob>) => work(job.data));
   // Without a callback: given one, an error of Redis would be thrown where nobody catches it.
   await queue.checkStalledJobs(stallIntervalMs);
 }
@@ -142,10 +145,13 @@ export function openWorkerQueue(
   settings: RedisSettings,
   log: Logger,
   work: (runId: number) => Promise<void>,
+  workOnRoom: (roomId: number) => Promise<void> = () => Promise.resolve(),
 ): OpenQueue {
   const queue = makeQueue(settings, log, true);
   // Nothing is lost: the run's row still says that it is under way, and the sweep finds it when its lease has passed.
-  queue.on('failed', ({ data }, error) => log.error({ err: error, runId: data.runId }, 'A turn broke off'));
-  startWorking(queue, log, work).catch((error: unknown) => log.warn({ err: error }, 'The queue'));
+  queue.on('failed', ({ data }, error) => log.error({ err: error, ...data }, 'A turn broke off'));
+  startWorking(queue, log, (job) => ('runId' in job ? work(job.runId) : workOnRoom(job.roomId))).catch(
+    (error: unknown) => log.warn({ err: error }, 'The queue'),
+  );
   return open(queue, log);
 }

@@ -1,6 +1,7 @@
 import type { AddressInfo } from 'node:net';
 import { openDatabase } from '../db/connection.ts';
 import { createApp } from './app.ts';
+import { openCompute } from './compute.ts';
 import { readConfig } from './config.ts';
 import { openEvents } from './events.ts';
 import { createLog } from './log.ts';
@@ -14,8 +15,9 @@ const log = createLog(config.logLevel, 'server');
 const db = openDatabase(config.database);
 const queue = openQueue(config.redis, log);
 const events = openEvents(config.redis, log);
+const compute = openCompute({ file: config.computeFile, limitSeconds: config.computeSeconds, log });
 
-const server = createApp({ db, config, queue, events, log }).listen(
+const server = createApp({ db, config, queue, events, compute, log }).listen(
   config.port,
   config.host,
   (fault?: Error) => {
@@ -47,6 +49,7 @@ async function stop(): Promise<void> {
   if (stopping) return;
   stopping = true;
   await closeServer();
+  compute.close();
   await Promise.all([queue.close(), events.close()]);
   await db.destroy();
 }

@@ -21,9 +21,11 @@ const comparisonWords: Record<Comparison, string> = {
   '>=': 'at least',
 };
 
-/** Amperes are whole, percent and ratios have at least one decimal. */
+const decimalsOf: Readonly<Record<string, number>> = { A: 0, kW: 0, kVA: 0, '': 2, pu: 3 };
+
+/** Amperes and kilowatts are whole, percent have at least one decimal, ratios two, voltages over nominal three. */
 function fewestDecimals(unit: string): number {
-  return unit === 'A' || unit === 'kW' ? 0 : 1;
+  return decimalsOf[unit] ?? 1;
 }
 
 /** A question without numbers is answered from a table: yes or no. */

@@ -7,13 +7,14 @@ interface Lock {
 
 /** Licences that let the product be sold without conditions on its own code. */
 const permitted =
-  /^(MIT|MIT-0|ISC|0BSD|BSD-2-Clause|BSD-3-Clause|Apache-2\.0|BlueOak-1\.0\.0|OFL-1\.1|MPL-2\.0|\(MIT OR EUPL-1\.1\+\))$/;
+  /^(MIT|MIT-0|ISC|0BSD|BSD-2-Clause|BSD-3-Clause|Apache-2\.0|BlueOak-1\.0\.0|OFL-1\.1|MPL-2\.0|\(MIT OR EUPL-1\.1\+\)|\(MIT AND Zlib\))$/;
 /** Packages whose licence is permissive but missing in the lock file, read in the package itself. */
 const readByHand: Record<string, string> = {
   'node_modules/busboy': 'MIT',
   'node_modules/passport-local': 'MIT',
   'node_modules/passport-strategy': 'MIT',
   'node_modules/pause': 'MIT',
+  'node_modules/png-js': 'MIT',
   'node_modules/streamsearch': 'MIT',
 };
 

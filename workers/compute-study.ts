@@ -1,6 +1,5 @@
-import type { Finding } from '../shared/schemas/findings.ts';
+import type { StudyAnswer } from '../server/compute-messages.ts';
 import type { RuleSet } from '../shared/schemas/rule-sets.ts';
-import type { RunSummary } from '../shared/schemas/runs.ts';
 import { listNotFinite } from './engine/finite-result.ts';
 import { listProblems } from './engine/problems.ts';
 import { readStudy } from './engine/read-study.ts';
@@ -8,23 +7,6 @@ import { runStudy, type StudyStep } from './engine/run-study.ts';
 import { writeResult } from './engine/write-result.ts';
 import { decodeText } from './study-text.ts';
 import { summariseResult } from './summarise-result.ts';
-
-interface ComputedStudy {
-  kind: 'computed';
-  /** Exactly what the command line prints for the same study and rule set. */
-  resultBytes: Uint8Array;
-  findings: Finding[];
-  warnings: string[];
-  summary: RunSummary | null;
-}
-
-/** A study that cannot be run: one line for each thing that is wrong with it. */
-interface RefusedStudy {
-  kind: 'refused';
-  problems: string[];
-}
-
-export type StudyAnswer = ComputedStudy | RefusedStudy;
 
 /** From the bytes of a study file to the bytes of its result. */
 export function computeStudy(

@@ -1,23 +1,22 @@
 /** The resident compute child: bytes in, bytes out. Whoever started it may end it at any moment. */
-import type { ComputeReply, ComputeRequest } from './compute-messages.ts';
-import { computeStudy } from './compute-study.ts';
+import type { ComputeReply, ComputeRequest } from '../server/compute-messages.ts';
+import { answerQuestion } from './answer-question.ts';
 
 function reply(message: ComputeReply): void {
   process.send?.(message);
 }
 
-process.on('message', ({ id, studyBytes, ruleSet }: ComputeRequest) => {
+async function answerRequest({ id, kind, question }: ComputeRequest): Promise<void> {
   try {
-    const answer = computeStudy(studyBytes, ruleSet, (step) => reply({ id, kind: 'step', step }));
+    const answer = await answerQuestion(kind, question, (step) => reply({ id, kind: 'step', step }));
     reply({ id, kind: 'answer', answer });
   } catch (error) {
-    reply({
-      id,
-      kind: 'fault',
-      message: error instanceof Error ? (error.stack ?? error.message) : String(error),
-    });
+    const message = error instanceof Error ? (error.stack ?? error.message) : String(error);
+    reply({ id, kind: 'fault', message });
   }
-});
+}
+
+process.on('message', (request: ComputeRequest) => void answerRequest(request));
 
 // Who asked is gone: nobody is left to compute for.
 process.on('disconnect', () => process.exit(0));

@@ -1,12 +1,13 @@
 /** The screening worker: computes runs, finds lost ones, sends the mail. */
 import { openDatabase } from '../db/connection.ts';
+import { openCompute } from '../server/compute.ts';
 import { readConfig } from '../server/config.ts';
 import { openEvents } from '../server/events.ts';
 import { createLog } from '../server/log.ts';
 import { openTransport } from '../server/mail/transport.ts';
 import { openWorkerQueue } from '../server/queue.ts';
 import { removeOrphanFiles } from '../server/services/files.ts';
-import { openCompute } from './compute-client.ts';
+import { findRoomOfModel, sweepRooms, type RoomDeps } from './jobs/find-room.ts';
 import { deliverMail } from './jobs/deliver-mail.ts';
 import type { ScreenDeps } from './jobs/screen-deps.ts';
 import { screenRun } from './jobs/screen.ts';
@@ -25,7 +26,7 @@ const compute = openCompute({ file: config.computeFile, limitSeconds: config.com
 const transport = openTransport(config.smtp);
 const now = () => new Date();
 
-const screening: ScreenDeps = {
+const screening: ScreenDeps & RoomDeps = {
   db,
   events,
   log,
@@ -35,19 +36,25 @@ const screening: ScreenDeps = {
   retryDelaysSeconds,
 };
 let underWay: Promise<void> = Promise.resolve();
-const queue = openWorkerQueue(config.redis, log, (runId) => {
-  underWay = screenRun(screening, runId);
-  return underWay;
-});
+const follow = (work: Promise<void>) => (underWay = work);
+const queue = openWorkerQueue(
+  config.redis,
+  log,
+  (runId) => follow(screenRun(screening, runId)),
+  (roomId) => follow(findRoomOfModel(screening, roomId)),
+);
 
 const repeated = [
   repeat('The sweep', config.sweepSeconds, log, () =>
     sweepRuns({ db, queue, log, now, queuedGraceSeconds: config.queuedGraceSeconds }),
   ),
+  repeat('The sweep of rooms', config.sweepSeconds, log, () =>
+    sweepRooms({ db, queue, now, queuedGraceSeconds: config.queuedGraceSeconds }),
+  ),
   repeat('The outbox', config.outboxSeconds, log, () => deliverMail({ db, config, log, transport, now })),
   repeat('Files that belong to nothing', dayInSeconds, log, () =>
     removeOrphanFiles(
-      { db, config, queue, events, log },
+      { db, config, queue, events, compute, log },
       { actor: null, now: now(), ip: '', requestId: 'worker' },
     ),
   ),

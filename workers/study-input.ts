@@ -8,27 +8,43 @@ import { escapeText, listProblems } from './engine/problems.ts';
 import { readRuleSet } from './engine/read-rule-set.ts';
 import { decodeText } from './study-text.ts';
 
-const usage = 'usage: npm run --silent study -- FILE | - [--timing] [--rules FILE]';
+const usage =
+  'usage: npm run --silent study -- FILE | - [--timing] [--rules FILE] [--sheet OUT.pdf | OUT.html] [--paper a4 | letter]';
 
 /** Something that the caller has to put right; its message is for standard error. */
 export class InputError extends Error {}
 
-export function readArguments(): { file: string; timing: boolean; rules: string | undefined } {
+export type StudyArguments = {
+  file: string;
+  timing: boolean;
+  rules: string | undefined;
+  /** Where a working sheet is to be written. */
+  sheet: { file: string; paper: 'a4' | 'letter' } | undefined;
+};
+
+export function readArguments(): StudyArguments {
   const { values, positionals } = parseArguments();
-  const { timing, rules } = values;
+  const { timing, rules, sheet, paper } = values;
   if (positionals.length !== 1)
     throw new InputError(`got ${positionals.length} files, expected one\n${usage}`);
   const [file] = positionals as [string];
   if (file === '-' && rules === '-')
     throw new InputError('got - twice, expected standard input to be one file');
-  return { file, timing, rules };
+  if (paper !== 'a4' && paper !== 'letter')
+    throw new InputError(`--paper: got ${escapeText(paper)}, expected a4 or letter\n${usage}`);
+  return { file, timing, rules, sheet: sheet === undefined ? undefined : { file: sheet, paper } };
 }
 
 function parseArguments() {
   try {
     return parseArgs({
       allowPositionals: true,
-      options: { timing: { type: 'boolean', default: false }, rules: { type: 'string' } },
+      options: {
+        timing: { type: 'boolean', default: false },
+        rules: { type: 'string' },
+        sheet: { type: 'string' },
+        paper: { type: 'string', default: 'letter' },
+      },
     });
   } catch (error) {
     if (!(error instanceof TypeError)) throw error;
@@ -70,7 +86,7 @@ export function orThrow<T extends object>(read: T | { problems: Problems }): T {
 }
 
 /** npm runs scripts in the project's folder and names the caller's. */
-function callersFolder(): string {
+export function callersFolder(): string {
   const isNpmScript = process.env.npm_lifecycle_event === 'study';
   return (isNpmScript && process.env.INIT_CWD) || process.cwd();
 }

@@ -7,6 +7,11 @@ import * as createStageEvents from './20261201100500_create_stage_events.ts';
 import * as createRuns from './20261201100600_create_runs.ts';
 import * as createOutbox from './20261201100700_create_outbox.ts';
 import * as createAuditEntries from './20261201100800_create_audit_entries.ts';
+import * as createPreApplicationReports from './20261201120000_create_pre_application_reports.ts';
+import * as versionRuleSets from './20261201110000_version_rule_sets.ts';
+import * as agreeToWaivers from './20261201110100_agree_to_waivers.ts';
+import * as createVariants from './20261201130000_create_variants.ts';
+import * as createModelRooms from './20261201140000_create_model_rooms.ts';
 
 /** In order. A static list, because a directory of .ts files fails in a bundle and under the test runner. */
 export const migrations = [
@@ -19,4 +24,9 @@ export const migrations = [
   { name: '20261201100600_create_runs', migration: createRuns },
   { name: '20261201100700_create_outbox', migration: createOutbox },
   { name: '20261201100800_create_audit_entries', migration: createAuditEntries },
+  { name: '20261201120000_create_pre_application_reports', migration: createPreApplicationReports },
+  { name: '20261201110000_version_rule_sets', migration: versionRuleSets },
+  { name: '20261201110100_agree_to_waivers', migration: agreeToWaivers },
+  { name: '20261201130000_create_variants', migration: createVariants },
+  { name: '20261201140000_create_model_rooms', migration: createModelRooms },
 ] as const;

@@ -1,3 +1,4 @@
+import type { ClockRule } from '../../shared/schemas/rule-sets.ts';
 import type { Database, Transaction } from '../connection.ts';
 
 /** From a day on the other side had the ball, until a day; still open while `toOn` is null. */
@@ -10,6 +11,7 @@ export interface Clock {
   id: number;
   applicationId: number;
   kind: string;
+  unit: ClockRule['unit'];
   allowedDays: number;
   calendarId: number;
   startedOn: string;
@@ -24,6 +26,7 @@ const columns = {
   id: 'id',
   applicationId: 'application_id',
   kind: 'kind',
+  unit: 'unit',
   allowedDays: 'allowed_days',
   calendarId: 'calendar_id',
   startedOn: 'started_on',
@@ -59,6 +62,7 @@ export async function insertClock(
   await trx('clocks').insert({
     application_id: clock.applicationId,
     kind: clock.kind,
+    unit: clock.unit,
     allowed_days: clock.allowedDays,
     calendar_id: clock.calendarId,
     started_on: clock.startedOn,

@@ -38,3 +38,12 @@ export async function findFileOwner(
     });
   return row && { organisationId: row.organisationId, isHandedIn: row.revisionId !== null };
 }
+
+export async function findReportOwner(
+  db: Database,
+  publicId: string,
+): Promise<{ organisationId: number } | undefined> {
+  return db('pre_application_reports')
+    .where({ public_id: publicId })
+    .first<{ organisationId: number } | undefined>('organisation_id as organisationId');
+}

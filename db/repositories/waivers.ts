@@ -7,7 +7,11 @@ export interface WaiverRow {
   element: string;
   reason: string;
   by: string;
+  byId: number;
   at: Date;
+  /** The second person; null until one has agreed. */
+  agreedBy: string | null;
+  agreedAt: Date | null;
 }
 
 export interface NewWaiver {
@@ -19,7 +23,7 @@ export interface NewWaiver {
   waivedAt: Date;
 }
 
-/** A second reason for the same finding takes the first one's place. */
+/** A second reason for the same finding takes the first one's place; whoever agreed had agreed to the first. */
 export async function saveWaiver(trx: Transaction, waiver: NewWaiver): Promise<void> {
   await trx('finding_waivers')
     .insert({
@@ -29,9 +33,21 @@ export async function saveWaiver(trx: Transaction, waiver: NewWaiver): Promise<v
       reason: waiver.reason,
       waived_by: waiver.waivedBy,
       waived_at: waiver.waivedAt,
+      agreed_by: null,
+      agreed_at: null,
     })
     .onConflict(['run_id', 'question', 'element'])
-    .merge(['reason', 'waived_by', 'waived_at']);
+    .merge(['reason', 'waived_by', 'waived_at', 'agreed_by', 'agreed_at']);
+}
+
+export async function agreeToWaiver(
+  trx: Transaction,
+  waiver: Pick<NewWaiver, 'runId' | 'question' | 'element'>,
+  { by, at }: { by: number; at: Date },
+): Promise<void> {
+  await trx('finding_waivers')
+    .where({ run_id: waiver.runId, question: waiver.question, element: waiver.element })
+    .update({ agreed_by: by, agreed_at: at });
 }
 
 export async function deleteWaiver(
@@ -46,6 +62,7 @@ export async function deleteWaiver(
 export async function listWaivers(db: Database, runId: number): Promise<WaiverRow[]> {
   return db('finding_waivers')
     .join('users', 'users.id', 'finding_waivers.waived_by')
+    .leftJoin('users as second', 'second.id', 'finding_waivers.agreed_by')
     .where({ run_id: runId })
     .orderBy(['waived_at', 'question', 'element'])
     .select<WaiverRow[]>({
@@ -54,6 +71,9 @@ export async function listWaivers(db: Database, runId: number): Promise<WaiverRo
       element: 'element',
       reason: 'reason',
       by: 'users.name',
+      byId: 'users.id',
       at: 'waived_at',
+      agreedBy: 'second.name',
+      agreedAt: 'agreed_at',
     });
 }

@@ -10,6 +10,7 @@ const subjectWords: Record<Subject, string> = {
   run: 'The run',
   file: 'The file',
   message: 'The message',
+  report: 'The report',
 };
 
 async function checkAccess(deps: Deps, rule: Rule, actor: Actor | null, id: string): Promise<void> {

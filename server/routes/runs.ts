@@ -1,9 +1,9 @@
 import { Type } from '@sinclair/typebox';
 import type { Response } from 'express';
-import { Waiver } from '../../shared/schemas/applications.ts';
+import { Waiver, WaiverAgreement } from '../../shared/schemas/applications.ts';
 import { route } from '../route-definition.ts';
 import { getRunBytes, getRunView, listRuns, screenAgain, type StoredBytes } from '../services/runs.ts';
-import { takeBackWaiver, waiveFinding } from '../services/waivers.ts';
+import { agreeToSettingAside, takeBackWaiver, waiveFinding } from '../services/waivers.ts';
 
 const FindingKey = Type.Object(
   {
@@ -53,6 +53,13 @@ export const runRoutes = [
     action: 'run.waive',
     body: Waiver,
     handle: ({ deps, context, params, body }) => waiveFinding(deps, context, params.id, body),
+  }),
+  route({
+    method: 'put',
+    path: '/runs/:id/waivers/agreement',
+    action: 'run.waive',
+    body: WaiverAgreement,
+    handle: ({ deps, context, params, body }) => agreeToSettingAside(deps, context, params.id, body),
   }),
   route({
     method: 'delete',

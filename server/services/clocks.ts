@@ -8,15 +8,31 @@ import {
   stopClock,
   type Clock,
 } from '../../db/repositories/clocks.ts';
+import type { Application } from '../../db/repositories/applications.ts';
+import { getRuleSetVersion, getValidRuleSet } from '../../db/repositories/rule-sets.ts';
 import type { ApplicationEvent, Stage } from '../../shared/rules/application-life.ts';
-import { addBusinessDays, countBusinessDays, localDate } from '../../shared/rules/business-days.ts';
-import { clockKinds, clockOfStage, type ClockKind } from '../../shared/rules/clock-kinds.ts';
+import {
+  addBusinessDays,
+  addCalendarDays,
+  countBusinessDays,
+  countCalendarDays,
+  localDate,
+} from '../../shared/rules/business-days.ts';
+import {
+  clockKinds,
+  clockOfStage,
+  type ClockKind,
+  type ClockKindKey,
+} from '../../shared/rules/clock-kinds.ts';
+import { getClockRule } from '../../shared/rules/rule-terms.ts';
 import type { ClockView } from '../../shared/schemas/applications.ts';
+import type { RuleSet } from '../../shared/schemas/rule-sets.ts';
 import type { Context } from '../context.ts';
 import { getCalendarInForce, listHolidays } from './holidays.ts';
 import { getUtilitySettings } from './utility-settings.ts';
 
 type Holidays = ReadonlySet<string>;
+type Clocked = Pick<Application, 'id' | 'ruleSetVersionId'>;
 
 const kindsByKey = new Map<string, ClockKind>(Object.entries(clockKinds));
 
@@ -24,13 +40,22 @@ function isPaused(clock: Clock): boolean {
   return clock.pauses.some((pause) => pause.toOn === null);
 }
 
-/** Business days until `today`, without those on which the ball was in the other court. */
+/** The days after `from` up to `to`, of the kind that the clock counts. */
+function countDays({ unit }: Pick<Clock, 'unit'>, from: string, to: string, holidays: Holidays): number {
+  return unit === 'calendar-day' ? countCalendarDays(from, to) : countBusinessDays(from, to, holidays);
+}
+
+function addDays({ unit }: Pick<Clock, 'unit'>, from: string, days: number, holidays: Holidays): string {
+  return unit === 'calendar-day' ? addCalendarDays(from, days) : addBusinessDays(from, days, holidays);
+}
+
+/** Days until `today`, without those on which the ball was in the other court. */
 function countUsedDays(clock: Clock, today: string, holidays: Holidays): number {
   const paused = clock.pauses.reduce(
-    (sum, { fromOn, toOn }) => sum + countBusinessDays(fromOn, toOn ?? today, holidays),
+    (sum, { fromOn, toOn }) => sum + countDays(clock, fromOn, toOn ?? today, holidays),
     0,
   );
-  return Math.max(0, countBusinessDays(clock.startedOn, today, holidays) - paused);
+  return Math.max(0, countDays(clock, clock.startedOn, today, holidays) - paused);
 }
 
 function toClockView(clock: Clock, today: string, holidays: Holidays, timeZone: string): ClockView {
@@ -39,6 +64,7 @@ function toClockView(clock: Clock, today: string, holidays: Holidays, timeZone: 
   return {
     kind: clock.kind,
     label: kindsByKey.get(clock.kind)?.label ?? clock.kind,
+    unit: clock.unit,
     allowedDays: clock.allowedDays,
     usedDays: countUsedDays(clock, lastDay, holidays),
     startedOn: clock.startedOn,
@@ -75,7 +101,7 @@ export function findCurrentClock(clocks: readonly ClockView[]): ClockView | null
 }
 
 /**
- * The clock goes on, and every business day of the pause comes on top of what it had left. A limit that had passed
+ * The clock goes on, and every day of the pause that it counts comes on top of what it had left. A limit that had passed
  * before the pause stays passed.
  */
 async function resumeClock(trx: Transaction, clock: Clock, today: string): Promise<void> {
@@ -84,19 +110,28 @@ async function resumeClock(trx: Transaction, clock: Clock, today: string): Promi
   await closePause(trx, clock.id, today);
   if (clock.dueOn < pause.fromOn) return;
   const holidays = (await listHolidays(trx, [clock.calendarId])).get(clock.calendarId) ?? new Set<string>();
-  const pausedDays = countBusinessDays(pause.fromOn, today, holidays);
-  await moveDueDate(trx, clock.id, addBusinessDays(clock.dueOn, pausedDays, holidays));
+  const pausedDays = countDays(clock, pause.fromOn, today, holidays);
+  await moveDueDate(trx, clock.id, addDays(clock, clock.dueOn, pausedDays, holidays));
 }
 
-async function startClock(trx: Transaction, applicationId: number, kind: ClockKind, today: string) {
+/** The rules that bind the application; before it is bound, those of the day. */
+async function getRules(trx: Transaction, { ruleSetVersionId }: Clocked, today: string): Promise<RuleSet> {
+  const version =
+    ruleSetVersionId === null ? getValidRuleSet(trx, today) : getRuleSetVersion(trx, ruleSetVersionId);
+  return (await version).content;
+}
+
+async function startClock(trx: Transaction, application: Clocked, kind: ClockKindKey, today: string) {
   const calendar = await getCalendarInForce(trx);
+  const { allowedDays, unit } = getClockRule(await getRules(trx, application, today), kind);
   await insertClock(trx, {
-    applicationId,
-    kind: kind.key,
-    allowedDays: kind.allowedBusinessDays,
+    applicationId: application.id,
+    kind,
+    unit,
+    allowedDays,
     calendarId: calendar.id,
     startedOn: today,
-    dueOn: addBusinessDays(today, kind.allowedBusinessDays, calendar.days),
+    dueOn: addDays({ unit }, today, allowedDays, new Set(calendar.days)),
   });
 }
 
@@ -110,13 +145,13 @@ const heldClock = 'completeness';
 export async function turnClocks(
   trx: Transaction,
   context: Pick<Context, 'now'>,
-  applicationId: number,
+  application: Clocked,
   event: ApplicationEvent,
   toStage: Stage,
 ): Promise<string | null> {
   const { timeZone } = await getUtilitySettings(trx);
   const today = localDate(context.now, timeZone);
-  const open = (await listClocks(trx, [applicationId])).filter((clock) => clock.stoppedAt === null);
+  const open = (await listClocks(trx, [application.id])).filter((clock) => clock.stoppedAt === null);
   const held = open.find((clock) => clock.kind === heldClock);
   const isHolding = event === 'ask-for-missing' || event === 'resubmit';
   for (const clock of open) {
@@ -128,8 +163,8 @@ export async function turnClocks(
   const isResumed = event === 'resubmit' && held !== undefined;
   if (isResumed) await resumeClock(trx, held, today);
   const started = clockOfStage[toStage];
-  if (started !== undefined && !isResumed) await startClock(trx, applicationId, clockKinds[started], today);
-  return findNextDueDate(await listClocks(trx, [applicationId]));
+  if (started !== undefined && !isResumed) await startClock(trx, application, started, today);
+  return findNextDueDate(await listClocks(trx, [application.id]));
 }
 
 function findNextDueDate(clocks: readonly Clock[]): string | null {
@@ -141,7 +176,7 @@ function findNextDueDate(clocks: readonly Clock[]): string | null {
 export async function getDueDate(
   trx: Transaction,
   applicationId: number,
-  kind: keyof typeof clockKinds,
+  kind: ClockKindKey,
 ): Promise<string> {
   const clock = (await listClocks(trx, [applicationId])).findLast((candidate) => candidate.kind === kind);
   if (clock === undefined) throw new Error(`Application row ${applicationId} has no clock "${kind}"`);

@@ -4,9 +4,11 @@ import { insertDecision } from '../../db/repositories/decisions.ts';
 import { getRuleSetVersion } from '../../db/repositories/rule-sets.ts';
 import { findNewestRun, findRun, listFindings, type Run } from '../../db/repositories/runs.ts';
 import { listWaivers, type WaiverRow } from '../../db/repositories/waivers.ts';
-import type { ApplicationEvent } from '../../shared/rules/application-life.ts';
+import type { ApplicationEvent, Stage } from '../../shared/rules/application-life.ts';
 import type { ApplicationView, Decision, DecisionKind } from '../../shared/schemas/applications.ts';
-import { askedQuestions, type Finding } from '../../shared/schemas/findings.ts';
+import { getSetAside, isBlockingAt } from '../../shared/rules/rule-terms.ts';
+import type { Finding, QuestionId } from '../../shared/schemas/findings.ts';
+import { listAsked, type RuleSet } from '../../shared/schemas/rule-sets.ts';
 import type { Deps, SignedInContext } from '../context.ts';
 import { conflict, refused } from '../errors.ts';
 import { announce } from './announcements.ts';
@@ -15,6 +17,7 @@ import { describeStaleness } from './bases.ts';
 import { findMailSubject, queueMail } from './outbox.ts';
 import { leaveQueue } from './queue-entries.ts';
 import { releaseFindings } from './released-findings.ts';
+import { listUnconfirmedOf } from './rule-confirmations.ts';
 import { checkHolder, checkVersion, getTransition, lockWithModel, moveApplication } from './transitions.ts';
 
 const events = {
@@ -50,27 +53,47 @@ async function getDecidableRun(
 }
 
 /** Remembered values decide nothing until somebody has confirmed them against the clause. */
-async function checkRuleSet(trx: Transaction, application: Application): Promise<void> {
+async function getSoundRuleSet(trx: Transaction, application: Application): Promise<RuleSet> {
   if (application.ruleSetVersionId === null)
     throw new Error(`Application ${application.publicId} has no rules`);
-  const { content, confirmedAt } = await getRuleSetVersion(trx, application.ruleSetVersionId);
-  const remembered = Object.values(content.rules).filter((rule) => rule.readOrMemory === 'memory');
-  if (confirmedAt !== null || remembered.length === 0) return;
-  const sources = [...new Set(remembered.map((rule) => rule.source))].join('; ');
+  const version = await getRuleSetVersion(trx, application.ruleSetVersionId);
+  const { content } = version;
+  const unconfirmed = await listUnconfirmedOf(trx, version);
+  if (unconfirmed.length === 0) return content;
+  const remembered = unconfirmed.map(({ id }) => content.rules[id as QuestionId]?.source);
+  const sources = [...new Set(remembered)].join('; ');
   throw refused(
     'rule-set-unconfirmed',
     `The rules hold values from memory that nobody has confirmed: ${sources}`,
   );
 }
 
-/** What stands against an approval: each finding that is neither within nor set aside, each question not answered. */
-function listOpenQuestions(findings: readonly Finding[], waivers: readonly WaiverRow[]): string[] {
+/** What was set aside and counts: with a second person's agreement where the rules ask for one. */
+function listEffective(ruleSet: RuleSet, waivers: readonly WaiverRow[]): WaiverRow[] {
+  const needsSecond = ({ question }: WaiverRow) =>
+    getSetAside(ruleSet.rules[question as QuestionId]).secondPerson;
+  return waivers.filter((waiver) => waiver.agreedBy !== null || !needsSecond(waiver));
+}
+
+/**
+ * What stands against an approval at this stage: each finding that is neither within nor set aside, each question not
+ * answered.
+ */
+function listOpenQuestions(
+  ruleSet: RuleSet,
+  stage: Stage,
+  findings: readonly Finding[],
+  waivers: readonly WaiverRow[],
+): string[] {
+  const isBlocking = ({ id }: { id: string }) => isBlockingAt(ruleSet.rules[id as QuestionId]?.stage, stage);
   const isWaived = (finding: Finding) =>
     waivers.some(({ question, element }) => question === finding.id && element === (finding.element ?? ''));
   const isSettled = (finding: Finding) =>
     finding.verdict === 'within' || finding.verdict === 'not-applicable' || isWaived(finding);
-  const open = findings.filter((finding) => !isSettled(finding));
-  const unanswered = askedQuestions.filter(({ id }) => !findings.some((finding) => finding.id === id));
+  const open = findings.filter((finding) => isBlocking(finding) && !isSettled(finding));
+  const unanswered = listAsked(ruleSet).filter(
+    (asked) => isBlocking(asked) && !findings.some(({ id }) => id === asked.id),
+  );
   const named = open.map(({ question, element }) =>
     element === undefined ? question : `${question} (${element})`,
   );
@@ -86,7 +109,13 @@ function describeDecision(decision: Decision, run: Run, waivers: readonly Waiver
     runId: run.publicId,
     basisSha256: run.basisSha256.toString('hex'),
     resultSha256: run.resultSha256?.toString('hex') ?? null,
-    setAside: waivers.map(({ question, element, reason }) => ({ question, element, reason })),
+    setAside: waivers.map(({ question, element, reason, by, agreedBy }) => ({
+      question,
+      element,
+      reason,
+      by,
+      agreedBy,
+    })),
   };
 }
 
@@ -135,10 +164,11 @@ export async function decide(
     const event = events[body.kind];
     getTransition(context, application, event);
     const run = await getDecidableRun(trx, context, application, body.runId);
-    await checkRuleSet(trx, application);
+    const ruleSet = await getSoundRuleSet(trx, application);
     const findings = await listFindings(trx, run.id);
-    const waivers = await listWaivers(trx, run.id);
-    const open = body.kind === 'approve' ? listOpenQuestions(findings, waivers) : [];
+    const waivers = listEffective(ruleSet, await listWaivers(trx, run.id));
+    const open =
+      body.kind === 'approve' ? listOpenQuestions(ruleSet, application.stage, findings, waivers) : [];
     if (open.length > 0) {
       const errors = open.map((message) => ({ path: 'kind', message }));
       const words = `Answer these or set them aside with a reason before you approve: ${open.join(' · ')}`;

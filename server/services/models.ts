@@ -32,7 +32,7 @@ function drawFeeder({ nodes, lines = [], transformers = [], devices = [] }: Feed
   return {
     lines: lines.flatMap(({ from, to, phases, circuit = '' }) => {
       const path = [placeOf.get(from), placeOf.get(to)].filter((place) => place !== undefined);
-      return path.length === 2 ? [{ circuit, phases, path }] : [];
+      return path.length === 2 ? [{ circuit, phases, path, to }] : [];
     }),
     devices: devices.flatMap((device) => {
       const place = findPlace(device);

@@ -1,4 +1,9 @@
-import { findApplicationOwner, findFileOwner, findRunOwner } from '../../db/repositories/ownership.ts';
+import {
+  findApplicationOwner,
+  findFileOwner,
+  findReportOwner,
+  findRunOwner,
+} from '../../db/repositories/ownership.ts';
 import type { ApplicationOwner } from '../../db/repositories/ownership.ts';
 import type { Reach, Subject } from '../access.ts';
 import type { Actor, Deps } from '../context.ts';
@@ -24,6 +29,7 @@ const loaders: Record<Subject, (deps: Deps, id: string) => Promise<Owner | undef
     const found = await findFileOwner(db, id);
     return found && { organisationId: found.organisationId, unfinished: !found.isHandedIn };
   },
+  report: ({ db }, id) => findReportOwner(db, id),
   message: async ({ config }, id) => {
     const emails = await listRecipients(config.mailboxDir, id);
     return emails && { emails };

@@ -1,4 +1,4 @@
-import type { AskedQuestionId, Finding, Verdict } from '../../shared/schemas/findings.ts';
+import type { Finding, QuestionId, Verdict } from '../../shared/schemas/findings.ts';
 
 const gravity: Record<Verdict, number> = { outside: 3, 'needs-data': 2, within: 1, 'not-applicable': 0 };
 
@@ -12,7 +12,41 @@ function isGraver(finding: Finding, other: Finding): boolean {
  * Why a question could not be answered, in words that hold for everything the engine may have missed there: no device,
  * node or project of another can be read out of them.
  */
-const lackWords: Record<AskedQuestionId, string> = {
+const lackWords: Record<QuestionId, string> = {
+  'fast-track-size':
+    'The utility’s records of this feeder lack what Fast Track eligibility is read from here.',
+  jurisdiction: 'The utility’s records of this feeder lack whether these rules apply to it.',
+  'spot-network': 'The utility’s records of this feeder lack the load of the network here.',
+  'shared-secondary': 'The utility’s records of this feeder lack what else is connected to this secondary.',
+  'centre-tap-balance':
+    'The utility’s records of this feeder lack the service transformer here, or how the project divides between its halves.',
+  'transient-stability':
+    'The utility’s records of this feeder lack whether a transient-stability limitation is posted, or the total it applies to.',
+  'no-construction':
+    'The utility’s records of this feeder lack answers that this one follows from; they are asked above.',
+  'minimum-load': 'The utility’s records of this feeder lack the minimum load of a line section here.',
+  'voltage-quality':
+    'The utility’s records of this feeder lack answers about voltage that this one follows from.',
+  'safety-reliability':
+    'The utility’s records of this feeder lack what describes its line section: length, loading, uniformity, transfers.',
+  'inverter-grounding':
+    'The utility’s records of this feeder lack the minimum load of what would be cut off, or what the inverters are.',
+  'high-side-float':
+    'The utility’s records of this feeder lack what is known of its substation transformer and its protection.',
+  'load-rejection': 'The utility’s records of this feeder lack the minimum load of what would be cut off.',
+  'steady-voltage':
+    'The utility’s records of this feeder lack loads or settings that its voltage follows from.',
+  'rapid-voltage-change':
+    'The utility’s records of this feeder lack what the project’s voltage change follows from here.',
+  'ground-reach': 'The utility’s records of this feeder lack the ground pickup of a device.',
+  'phase-reach': 'The utility’s records of this feeder lack the phase pickup of a device.',
+  'sympathetic-trip': 'The utility’s records of this feeder lack the pickup of the feeder breaker.',
+  islanding: 'The utility’s records of this feeder lack the minimum load of what could stay alive alone.',
+  reclosing: 'The utility’s records of this feeder lack how its devices reclose.',
+  'reverse-flow':
+    'The utility’s records of this feeder lack ratings of lines, transformers or regulators on the way.',
+  service: 'The utility’s records of this feeder lack the service transformer or the drop to the project.',
+  listing: 'The utility’s records of this feeder lack the listing of the equipment.',
   'section-peak-load':
     'The utility’s records of this feeder lack a peak load that the generation of the line section here can be held against.',
   contribution: 'The utility’s records of this feeder lack what its source gives to a fault here.',

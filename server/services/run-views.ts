@@ -5,7 +5,8 @@ import { getRuleSetVersion } from '../../db/repositories/rule-sets.ts';
 import { listFindings, type Run } from '../../db/repositories/runs.ts';
 import { getModelPart, listProjectParts } from '../../db/repositories/study-parts.ts';
 import { listWaivers } from '../../db/repositories/waivers.ts';
-import { questionsNotAskedYet } from '../../shared/schemas/findings.ts';
+import { getSetAside } from '../../shared/rules/rule-terms.ts';
+import { listNotAsked, type RuleSet } from '../../shared/schemas/rule-sets.ts';
 import type { RunBasisView, RunView, WaivedFinding } from '../../shared/schemas/runs.ts';
 import type { Deps, SignedInContext } from '../context.ts';
 import { describeStaleness, type Basis } from './bases.ts';
@@ -13,9 +14,10 @@ import { releaseFindings } from './released-findings.ts';
 import { screenedStages } from './screened-stages.ts';
 import { getUtilitySettings, writeReference } from './utility-settings.ts';
 
-type StaffPart = Pick<RunView, 'stale' | 'staleReason' | 'summary' | 'warnings' | 'basis'>;
+type StaffPart = Pick<RunView, 'terms' | 'stale' | 'staleReason' | 'summary' | 'warnings' | 'basis'>;
 
 const nothingForApplicants: StaffPart = {
+  terms: {},
   stale: null,
   staleReason: null,
   summary: null,
@@ -56,8 +58,10 @@ async function makeStaffPart(
   run: Run,
 ): Promise<StaffPart> {
   const isAsked = isStalenessAsked(application, run);
+  const terms = describeTerms(await getRulesOf(deps.db, run));
   const staleReason = isAsked ? await describeStaleness(deps.db, context, application, run) : null;
   return {
+    terms,
     stale: isAsked ? staleReason !== null : null,
     staleReason,
     summary: run.summary,
@@ -72,13 +76,28 @@ function findPercent(run: Run): number {
 
 async function listWaivedFindings(deps: Deps, run: Run, isStaff: boolean): Promise<WaivedFinding[]> {
   const waivers = await listWaivers(deps.db, run.id);
-  return waivers.map(({ question, element, reason, by, at }) => ({
+  return waivers.map(({ question, element, reason, by, at, agreedBy }) => ({
     question,
     element: element === '' || !isStaff ? null : element,
     reason,
     by: isStaff ? by : 'The utility',
     at: at.toISOString(),
+    agreedBy: isStaff ? agreedBy : null,
   }));
+}
+
+/** The rules that the run was asked by. */
+async function getRulesOf(db: Database, run: Run): Promise<RuleSet> {
+  const { ruleSetVersionId } = JSON.parse(run.basis) as Basis;
+  return (await getRuleSetVersion(db, ruleSetVersionId)).content;
+}
+
+function describeTerms({ rules }: RuleSet): RunView['terms'] {
+  const terms = Object.entries(rules).map(([id, rule]) => [
+    id,
+    { stage: rule.stage, setAside: getSetAside(rule) },
+  ]);
+  return Object.fromEntries(terms) as RunView['terms'];
 }
 
 /** A run as this person may see it; whether they may at all is decided before. */
@@ -90,6 +109,7 @@ export async function makeRunView(
 ): Promise<RunView> {
   const isStaff = context.actor.role !== 'applicant';
   const findings = await listFindings(deps.db, run.id);
+  const rules = await getRulesOf(deps.db, run);
   const detail = isStaff && run.errorDetail !== null ? ` (${run.errorDetail})` : '';
   return {
     publicId: run.publicId,
@@ -103,7 +123,7 @@ export async function makeRunView(
     finishedAt: run.finishedAt?.toISOString() ?? null,
     error: run.error === null ? null : `${run.error}${detail}`,
     findings: isStaff ? findings : releaseFindings(findings),
-    notAskedYet: questionsNotAskedYet.map(({ id, question }) => ({ id, question })),
+    notAskedYet: listNotAsked(rules),
     waivers: await listWaivedFindings(deps, run, isStaff),
     ...(isStaff ? await makeStaffPart(deps, context, application, run) : nothingForApplicants),
   };

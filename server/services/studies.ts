@@ -1,5 +1,6 @@
 import type { Database } from '../../db/connection.ts';
 import { getBlob } from '../../db/repositories/blobs.ts';
+import { tieServices } from '../../shared/rules/service-ties.ts';
 import { getModelPart, getRuleSetPart, listProjectParts } from '../../db/repositories/study-parts.ts';
 import type { RuleSet } from '../../shared/schemas/rule-sets.ts';
 import {
@@ -36,22 +37,39 @@ const listNames = [
   'inverters',
   'loads',
   'devices',
+  'capacitors',
 ] as const satisfies (keyof ElementLists)[];
 
-/** Fields whose value is the id of another element. */
-const references = new Set(['node', 'from', 'to', 'branch', 'with']);
+type ListName = 'nodes' | (typeof listNames)[number];
+
+const generators: readonly ListName[] = ['machines', 'inverters'];
+
+/**
+ * Fields whose value is the id of another element, with the lists it is of: elements of different kinds may share an id. What a
+ * generator's `service` names is the feeder's in any case.
+ */
+const references = new Map<string, readonly ListName[]>([
+  ['node', ['nodes']],
+  ['from', ['nodes']],
+  ['to', ['nodes']],
+  ['branch', ['lines', 'transformers']],
+  ['with', generators],
+  ['unitMachine', generators],
+]);
 
 type Element = { id: string } & Record<string, unknown>;
 
-function listElements(project: Project): Element[] {
-  const lists = [project.nodes ?? [], ...listNames.map((name) => project[name] ?? [])];
-  return lists.flat() as unknown as Element[];
+/** Whether a project has an element with an id in one of some lists. */
+function makeOwnership(project: Project): (lists: readonly ListName[], id: unknown) => boolean {
+  const idsIn = (name: ListName) => new Set((project[name] ?? []).map((element) => element.id));
+  const ids = new Map((['nodes', ...listNames] as const).map((name) => [name, idsIn(name)]));
+  return (lists, id) => lists.some((name) => ids.get(name)!.has(id as string));
 }
 
 /** What the project brings gets its mark; a place on the feeder keeps its name, for it is not the project's. */
-function markElement(element: Element, own: ReadonlySet<string>, mark: string): Element {
+function markElement(element: Element, isOwn: ReturnType<typeof makeOwnership>, mark: string): Element {
   const entries = Object.entries(element).map(([key, value]) => {
-    const isOwnName = key === 'id' || (references.has(key) && own.has(value as string));
+    const isOwnName = key === 'id' || isOwn(references.get(key) ?? [], value);
     return [key, isOwnName ? `${mark}${value as string}` : value];
   });
   return Object.fromEntries(entries) as Element;
@@ -60,9 +78,9 @@ function markElement(element: Element, own: ReadonlySet<string>, mark: string): 
 /** The feeder with one more project on it, all its elements under `q-<number>/`. */
 function addAhead(feeder: Feeder, project: Project, number: number): Feeder {
   const mark = `q-${number}/`;
-  const own = new Set(listElements(project).map((element) => element.id));
+  const isOwn = makeOwnership(project);
   const marked = (elements: unknown) =>
-    ((elements ?? []) as Element[]).map((element) => markElement(element, own, mark));
+    ((elements ?? []) as Element[]).map((element) => markElement(element, isOwn, mark));
   const joined = { ...feeder, nodes: [...feeder.nodes, ...marked(project.nodes)] };
   for (const name of listNames) {
     const added = marked(project[name]);
@@ -77,28 +95,49 @@ function orderFeeder(feeder: Feeder): Feeder {
   return { ...Object.fromEntries(known.map((name) => [name, feeder[name as keyof Feeder]])), ...feeder };
 }
 
-/** The study file of a basis: from the same basis always the same bytes. */
-export async function composeStudy(
-  db: Database,
-  basis: StudyBasis,
-): Promise<{ bytes: Buffer; ruleSet: RuleSet }> {
-  const modelPart = await getModelPart(db, basis.modelVersionId);
+/** A model with everybody ahead on it. */
+async function composeFeeder(db: Database, modelVersionId: number, aheadRevisionIds: number[]) {
+  const modelPart = await getModelPart(db, modelVersionId);
   const model = (await readJson(db, modelPart.sha256)) as Model;
   let { feeder } = model;
-  for (const part of await listProjectParts(db, basis.aheadRevisionIds)) {
-    feeder = addAhead(feeder, (await readJson(db, part.sha256)) as Project, part.applicationNumber);
+  for (const part of await listProjectParts(db, aheadRevisionIds)) {
+    const project = tieServices(feeder, (await readJson(db, part.sha256)) as Project);
+    feeder = addAhead(feeder, project, part.applicationNumber);
   }
-  const [ownPart] = await listProjectParts(db, [basis.ownRevisionId]);
-  const study: Study = {
+  return composeModel(`${modelPart.code}, version ${modelPart.number}`, model, feeder);
+}
+
+function composeModel(name: string, model: Model, feeder: Feeder): Study {
+  return {
     format: studyFormat,
-    name: `${modelPart.code}, version ${modelPart.number}`,
+    name,
     frequencyHz: model.frequencyHz,
     baseMva: model.baseMva,
     prefaultFactor: model.prefaultFactor,
     ...(model.minimumFaultOhm === undefined ? {} : { minimumFaultOhm: model.minimumFaultOhm }),
     feeder: orderFeeder(feeder),
-    project: (await readJson(db, ownPart!.sha256)) as Project,
   };
+}
+
+/** The study file of a model and its queue, without a project. */
+export async function composePlaceStudy(
+  db: Database,
+  modelVersionId: number,
+  aheadRevisionIds: number[],
+): Promise<{ bytes: Buffer }> {
+  const study = await composeFeeder(db, modelVersionId, aheadRevisionIds);
+  return { bytes: Buffer.from(JSON.stringify(study), 'utf8') };
+}
+
+/** The study file of a basis: from the same basis always the same bytes. */
+export async function composeStudy(
+  db: Database,
+  basis: StudyBasis,
+): Promise<{ bytes: Buffer; ruleSet: RuleSet }> {
+  const [ownPart] = await listProjectParts(db, [basis.ownRevisionId]);
+  const ground = await composeFeeder(db, basis.modelVersionId, basis.aheadRevisionIds);
+  const project = tieServices(ground.feeder, (await readJson(db, ownPart!.sha256)) as Project);
+  const study: Study = { ...ground, project };
   return {
     bytes: Buffer.from(JSON.stringify(study), 'utf8'),
     ruleSet: await getRuleSetPart(db, basis.ruleSetVersionId),

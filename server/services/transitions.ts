@@ -116,7 +116,7 @@ export async function moveApplication(
     ...changes,
     stage: to,
     waitingOn,
-    nextDueOn: await turnClocks(trx, context, application.id, event, to),
+    nextDueOn: await turnClocks(trx, context, { ...application, ...changes }, event, to),
     version: application.version + 1,
     updatedAt: context.now,
   };

@@ -8,13 +8,23 @@ import {
   raiseRunVersion,
   type Run,
 } from '../../db/repositories/runs.ts';
-import { deleteWaiver, listWaivers, saveWaiver } from '../../db/repositories/waivers.ts';
-import type { Waiver } from '../../shared/schemas/applications.ts';
+import {
+  agreeToWaiver,
+  deleteWaiver,
+  listWaivers,
+  saveWaiver,
+  type WaiverRow,
+} from '../../db/repositories/waivers.ts';
+import { getRuleSetVersion } from '../../db/repositories/rule-sets.ts';
+import { getSetAside } from '../../shared/rules/rule-terms.ts';
+import type { Waiver, WaiverAgreement } from '../../shared/schemas/applications.ts';
+import type { QuestionId } from '../../shared/schemas/findings.ts';
 import type { RunView } from '../../shared/schemas/runs.ts';
 import type { Deps, SignedInContext } from '../context.ts';
-import { conflict, notFound, refused } from '../errors.ts';
+import { conflict, notAllowed, notFound, refused } from '../errors.ts';
 import { announce } from './announcements.ts';
 import { recordAudit } from './audit.ts';
+import type { Basis } from './bases.ts';
 import { getRunView } from './runs.ts';
 import { screenedStages } from './screened-stages.ts';
 
@@ -43,10 +53,20 @@ async function lockOpenRun(
   return { run, application };
 }
 
-async function findReason(trx: Transaction, run: Run, key: FindingKey): Promise<string | null> {
+async function findWaiver(trx: Transaction, run: Run, key: FindingKey): Promise<WaiverRow | undefined> {
   const waivers = await listWaivers(trx, run.id);
-  const known = waivers.find(({ question, element }) => question === key.question && element === key.element);
-  return known?.reason ?? null;
+  return waivers.find(({ question, element }) => question === key.question && element === key.element);
+}
+
+/** Who may set findings of this question aside, as the rules say that the run was asked by. */
+async function getTerms(trx: Transaction, context: SignedInContext, run: Run, { question }: FindingKey) {
+  const { ruleSetVersionId } = JSON.parse(run.basis) as Basis;
+  const { content } = await getRuleSetVersion(trx, ruleSetVersionId);
+  const terms = getSetAside(content.rules[question as QuestionId]);
+  if (!terms.roles.some((role) => role === context.actor.role)) {
+    throw notAllowed('role-not-trusted', 'The rules do not let your role set this finding aside');
+  }
+  return terms;
 }
 
 /** Both ways alike: lock, change, write the audit entry; then tell the pages that show the run. */
@@ -55,18 +75,18 @@ async function changeWaiver(
   context: SignedInContext,
   publicId: string,
   key: FindingKey,
-  reason: string | null,
+  step: { action: string; after: { reason: string | null; agreedBy?: string } },
   change: (trx: Transaction, run: Run) => Promise<void>,
 ): Promise<RunView> {
   const event = await inTransaction(deps.db, async (trx) => {
     const { run, application } = await lockOpenRun(trx, publicId);
-    const before = await findReason(trx, run, key);
+    const before = await findWaiver(trx, run, key);
     await change(trx, run);
     const chain = `application:${application.publicId}` as const;
-    const action = reason === null ? 'take-back-waiver' : 'set-finding-aside';
     const subject = `run:${publicId}`;
     const on = { ...key, runId: publicId, basisSha256: run.basisSha256.toString('hex') };
-    await recordAudit(trx, context, chain, action, subject, { ...on, reason: before }, { ...on, reason });
+    const was = { ...on, reason: before?.reason ?? null };
+    await recordAudit(trx, context, chain, step.action, subject, was, { ...on, ...step.after });
     const version = await raiseRunVersion(trx, run);
     return { publicId, applicationPublicId: application.publicId, version };
   });
@@ -82,13 +102,15 @@ export async function waiveFinding(
   body: Waiver,
 ): Promise<RunView> {
   const key = { question: body.question, element: body.element ?? '' };
-  return changeWaiver(deps, context, publicId, key, body.reason, async (trx, run) => {
+  const step = { action: 'set-finding-aside', after: { reason: body.reason } };
+  return changeWaiver(deps, context, publicId, key, step, async (trx, run) => {
     const findings = await listFindings(trx, run.id);
     const finding = findings.find(({ id, element = '' }) => id === key.question && element === key.element);
     if (finding === undefined) throw refused('finding-unknown', 'The run has no such finding');
     if (finding.verdict === 'within' || finding.verdict === 'not-applicable') {
       throw refused('finding-settled', 'This finding stands against nothing; there is nothing to set aside');
     }
+    await getTerms(trx, context, run, key);
     const by = { waivedBy: context.actor.id, waivedAt: context.now };
     await saveWaiver(trx, { runId: run.id, ...key, reason: body.reason, ...by });
   });
@@ -100,8 +122,35 @@ export async function takeBackWaiver(
   publicId: string,
   key: FindingKey,
 ): Promise<RunView> {
-  return changeWaiver(deps, context, publicId, key, null, async (trx, run) => {
-    if ((await findReason(trx, run, key)) === null) throw notFound('What was set aside');
+  const step = { action: 'take-back-waiver', after: { reason: null } };
+  return changeWaiver(deps, context, publicId, key, step, async (trx, run) => {
+    await getTerms(trx, context, run, key);
+    if ((await findWaiver(trx, run, key)) === undefined) throw notFound('What was set aside');
     await deleteWaiver(trx, { runId: run.id, ...key });
+  });
+}
+
+/** The second person: what the rules let nobody set aside alone counts from here on. */
+export async function agreeToSettingAside(
+  deps: Deps,
+  context: SignedInContext,
+  publicId: string,
+  body: WaiverAgreement,
+): Promise<RunView> {
+  const key = { question: body.question, element: body.element ?? '' };
+  const step = { action: 'agree-to-waiver', after: { reason: body.reason, agreedBy: context.actor.name } };
+  return changeWaiver(deps, context, publicId, key, step, async (trx, run) => {
+    const { secondPerson } = await getTerms(trx, context, run, key);
+    const waiver = await findWaiver(trx, run, key);
+    if (waiver === undefined) throw notFound('What was set aside');
+    if (!secondPerson) throw refused('one-is-enough', 'The rules ask for no second person here');
+    if (waiver.byId === context.actor.id) {
+      throw refused('second-person', 'You set it aside yourself; another person must agree');
+    }
+    // Agreed is to what was read: another reason is another setting-aside.
+    if (waiver.reason !== body.reason) {
+      throw conflict('version-conflict', 'The reason was changed meanwhile; load the page again');
+    }
+    await agreeToWaiver(trx, { runId: run.id, ...key }, { by: context.actor.id, at: context.now });
   });
 }

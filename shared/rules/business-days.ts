@@ -12,12 +12,8 @@ interface Holiday {
 }
 
 function toTime(date: string): number {
-  const time = /^\d{4}-\d{2}-\d{2}$/.test(date) ? Date.parse(`${date}T00:00:00Z`) : Number.NaN;
-  // Date.parse takes 30 February for 2 March: only what comes back as it went in is a date.
-  if (Number.isNaN(time) || toDate(time) !== date) {
-    throw new RangeError(`Local date: got "${date}", expected a day as YYYY-MM-DD`);
-  }
-  return time;
+  if (!isLocalDate(date)) throw new RangeError(`Local date: got "${date}", expected a day as YYYY-MM-DD`);
+  return Date.parse(`${date}T00:00:00Z`);
 }
 
 function toDate(time: number): string {
@@ -26,6 +22,23 @@ function toDate(time: number): string {
 
 function shiftDays(date: string, days: number): string {
   return toDate(toTime(date) + days * dayMilliseconds);
+}
+
+/** Whether the text names a day that there is. */
+export function isLocalDate(date: string): boolean {
+  const time = /^\d{4}-\d{2}-\d{2}$/.test(date) ? Date.parse(`${date}T00:00:00Z`) : Number.NaN;
+  // Date.parse takes 30 February for 2 March: only what comes back as it went in is a date.
+  return !Number.isNaN(time) && toDate(time) === date;
+}
+
+/** The `days`-th day after `startDate`, whatever day it is: 2026-12-24 + 3 = 2026-12-27. */
+export function addCalendarDays(startDate: string, days: number): string {
+  return shiftDays(startDate, days);
+}
+
+/** Days after `startDate` up to and with `endDate`; 0 when the end is not after the start. */
+export function countCalendarDays(startDate: string, endDate: string): number {
+  return Math.max(0, (toTime(endDate) - toTime(startDate)) / dayMilliseconds);
 }
 
 /** 0 is Sunday. */

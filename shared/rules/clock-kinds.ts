@@ -8,6 +8,7 @@ export interface ClockKind {
   allowedBusinessDays: number;
   /** The clause, and how it is known. */
   source: string;
+  readOrMemory: 'read' | 'memory';
 }
 
 const kind = (
@@ -16,7 +17,8 @@ const kind = (
   waitingOn: ClockKind['waitingOn'],
   allowedBusinessDays: number,
   source: string,
-): ClockKind => ({ key, label, waitingOn, allowedBusinessDays, source });
+  readOrMemory: ClockKind['readOrMemory'],
+): ClockKind => ({ key, label, waitingOn, allowedBusinessDays, source, readOrMemory });
 
 /** Time limits of the federal pro forma (Small Generator Interconnection Procedures), in business days. */
 export const clockKinds = {
@@ -26,6 +28,7 @@ export const clockKinds = {
     'utility',
     10,
     'SGIP 1.3, read in a derived rule (20VAC5-314-50): complete or not, within 10 business days of receipt',
+    'read',
   ),
   cure: kind(
     'cure',
@@ -33,6 +36,7 @@ export const clockKinds = {
     'applicant',
     10,
     'SGIP 1.3, read in a derived rule (20VAC5-314-50): 10 business days after the notice',
+    'read',
   ),
   'initial-review': kind(
     'initial-review',
@@ -40,6 +44,7 @@ export const clockKinds = {
     'utility',
     15,
     'SGIP 2.2, read in a derived rule (20VAC5-314-60 B): 15 business days after the notice of completeness',
+    'read',
   ),
   'supplemental-offer': kind(
     'supplemental-offer',
@@ -47,6 +52,7 @@ export const clockKinds = {
     'applicant',
     15,
     'SGIP 2.4.1, read in a derived rule (Minnesota): 15 business days after the offer',
+    'read',
   ),
   'supplemental-review': kind(
     'supplemental-review',
@@ -54,6 +60,7 @@ export const clockKinds = {
     'utility',
     30,
     'SGIP 2.4.4, read in a derived rule (Minnesota): 30 business days after the deposit',
+    'read',
   ),
   'feasibility-study': kind(
     'feasibility-study',
@@ -61,6 +68,7 @@ export const clockKinds = {
     'utility',
     30,
     'SGIP Attachment 6, value from memory: 30 business days after the agreement is signed',
+    'memory',
   ),
   'system-impact-study': kind(
     'system-impact-study',
@@ -68,6 +76,7 @@ export const clockKinds = {
     'utility',
     30,
     'SGIP Attachment 7, value from memory: 30 business days after the agreement is signed (distribution)',
+    'memory',
   ),
   'facilities-study': kind(
     'facilities-study',
@@ -75,6 +84,7 @@ export const clockKinds = {
     'utility',
     45,
     'SGIP Attachment 8, value from memory: 45 business days where upgrades are needed',
+    'memory',
   ),
   tender: kind(
     'tender',
@@ -82,6 +92,7 @@ export const clockKinds = {
     'utility',
     5,
     'SGIP 2.2.2, value from memory: 5 business days after the determination',
+    'memory',
   ),
   signing: kind(
     'signing',
@@ -89,10 +100,11 @@ export const clockKinds = {
     'applicant',
     30,
     'SGIP 4.8, value from memory: 30 business days after it is tendered',
+    'memory',
   ),
 } as const satisfies Record<string, ClockKind>;
 
-type ClockKindKey = keyof typeof clockKinds;
+export type ClockKindKey = keyof typeof clockKinds;
 
 /** The clock that starts when an application enters a stage; stages that no clause limits have none. */
 export const clockOfStage: Partial<Record<Stage, ClockKindKey>> = {

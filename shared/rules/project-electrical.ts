@@ -1,6 +1,7 @@
 import type { CompleteAnswers, ConnectionAnswers, Neutral as NeutralAnswer } from '../schemas/answers.ts';
 import type { GeneratorKind, TransformerNameplate } from '../schemas/equipment.ts';
 import type { Inverter, Machine, Neutral, Node, Project, Transformer } from '../schemas/study.ts';
+import type { Listing } from '../schemas/study-utility.ts';
 import {
   isMachineGroup,
   readUnitGroups,
@@ -100,6 +101,18 @@ function toMachine(group: MachineGroup, id: string, place: Place, neutral: Neutr
   return { ...base, kind: 'synchronous', x0Pu: ratings.x0Pu * scale, neutral: toNeutral(neutral, count) };
 }
 
+/** A unit that is listed was tested to stop feeding an island; what its sheet does not say stays unsaid. */
+function toListing(ratings: InverterGroup['ratings']): Listing {
+  const { listed, category, settingsProfile, trdPercent, loadRejectionPercent } = ratings;
+  return {
+    ...(listed && { standard: 'IEEE 1547', antiIslanding: true }),
+    ...(category !== undefined && { category }),
+    ...(settingsProfile !== undefined && { profile: settingsProfile }),
+    ...(trdPercent !== undefined && { trdPercent }),
+    ...(loadRejectionPercent !== undefined && { loadRejectionPercent }),
+  };
+}
+
 /**
  * N equal inverters are one of N × kVA, since their currents add. The current is a multiple of the rated one at the
  * unit's own kV; at a node of another kV the same amperes are another multiple. A one-phase unit stands behind the
@@ -112,9 +125,12 @@ function toInverter({ kind, ratings, count }: InverterGroup, id: string, place: 
     node: place.node,
     phases: place.phases,
     kva: ratings.kva * count,
+    ...(place.phases.length === 1 && { ratedKv: ratings.kv }),
     faultCurrentPu: ratings.faultCurrentPu * scale,
     ...(kind === 'battery-inverter' && { storage: true }),
+    energy: kind === 'battery-inverter' ? 'storage' : 'photovoltaic',
     listed: ratings.listed,
+    listing: toListing(ratings),
   };
 }
 
@@ -165,6 +181,9 @@ export function composeProject(
   const project: Project = {
     id,
     node: poi.node,
+    ...(connection.panelInterruptingKa !== undefined && {
+      panelInterruptingKa: connection.panelInterruptingKa,
+    }),
     ...(site && { nodes: [site] }),
     ...(ratings &&
       connection.transformer && { transformers: [toTransformer(connection.transformer, ratings, poi.node)] }),

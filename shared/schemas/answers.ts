@@ -110,7 +110,7 @@ export type EquipmentAnswers = Static<typeof EquipmentAnswers>;
 export const windingConnections = ['YNyn0', 'YNd1', 'Dyn1', 'Dd0', 'YNy0', 'Yyn0', 'Yd1', 'Dy1'] as const;
 export type WindingConnection = (typeof windingConnections)[number];
 
-const Neutral = Type.Union(
+export const Neutral = Type.Union(
   [
     Type.Object({ kind: Type.Literal('solid') }, { additionalProperties: false }),
     Type.Object({ kind: Type.Literal('ungrounded') }, { additionalProperties: false }),
@@ -171,6 +171,14 @@ export const ConnectionAnswers = Type.Object(
         },
         { additionalProperties: false },
       ),
+    ),
+    /** Interrupting rating of the customer's main panel, where it has one. */
+    panelInterruptingKa: Type.Optional(
+      Type.Number({
+        minimum: 1,
+        maximum: 200,
+        errorMessage: 'Interrupting rating of the main panel must be between 1 and 200 kiloamperes',
+      }),
     ),
     /** How the star points of rotating machines are grounded; asked only where there are machines. */
     machineNeutral: Type.Optional(Neutral),

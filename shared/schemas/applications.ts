@@ -95,6 +95,10 @@ export const Waiver = Type.Object(
 );
 export type Waiver = Static<typeof Waiver>;
 
+/** A second person agrees to what one has set aside, with the reason as they read it. */
+export const WaiverAgreement = Waiver;
+export type WaiverAgreement = Waiver;
+
 /** A later step of the life that a reviewer records by hand (agreement tendered, witness test, ...). */
 export const Move = Type.Object(
   { version, event: Type.String({ minLength: 1, maxLength: 60 }), note: reason('Say what happened') },
@@ -146,10 +150,11 @@ export interface Worklist {
   pageSize: number;
 }
 
-/** Days count in business days; `usedDays` is counted up to today, without pauses. */
+/** `usedDays` is counted up to today, without pauses. */
 export interface ClockView {
   kind: string;
   label: string;
+  unit: 'business-day' | 'calendar-day';
   allowedDays: number;
   usedDays: number;
   startedOn: string;

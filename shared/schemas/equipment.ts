@@ -1,4 +1,5 @@
 import { Type, type Static } from '@sinclair/typebox';
+import { oneLine } from './text.ts';
 
 export const generatorKinds = [
   'pv-inverter',
@@ -35,6 +36,30 @@ export const InverterNameplate = Type.Object(
       errorMessage: 'Fault current must be between 0.5 and 4 times rated current',
     }),
     listed: Type.Boolean({ errorMessage: 'Say whether the inverter is listed to IEEE 1547' }),
+    /** Abnormal operating performance category of IEEE 1547-2018. */
+    category: Type.Optional(
+      Type.Union([Type.Literal('I'), Type.Literal('II'), Type.Literal('III')], {
+        errorMessage: 'Category must be I, II or III',
+      }),
+    ),
+    /** Name of the settings profile that it is delivered with. */
+    settingsProfile: Type.Optional(
+      oneLine('Enter the name of the settings profile in 80 characters or fewer', 80),
+    ),
+    trdPercent: Type.Optional(
+      Type.Number({
+        minimum: 0,
+        maximum: 100,
+        errorMessage: 'Total rated-current distortion must be between 0 and 100 percent',
+      }),
+    ),
+    loadRejectionPercent: Type.Optional(
+      Type.Number({
+        minimum: 100,
+        maximum: 300,
+        errorMessage: 'Highest voltage when the load is cut off must be between 100 and 300 percent',
+      }),
+    ),
   },
   { additionalProperties: false },
 );

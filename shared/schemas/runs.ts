@@ -1,4 +1,5 @@
 import type { Finding } from './findings.ts';
+import type { RuleStage, SetAside } from './rule-sets.ts';
 
 export const runStates = ['queued', 'running', 'finished', 'failed'] as const;
 export type RunState = (typeof runStates)[number];
@@ -42,6 +43,14 @@ export interface WaivedFinding {
   reason: string;
   by: string;
   at: string;
+  /** The second person who agreed; null where none has, or none is needed. */
+  agreedBy: string | null;
+}
+
+/** What the run's rules say about open findings of one question. */
+export interface QuestionTerms {
+  stage: RuleStage;
+  setAside: SetAside;
 }
 
 export interface RunView {
@@ -61,6 +70,8 @@ export interface RunView {
   notAskedYet: { id: string; question: string }[];
   waivers: WaivedFinding[];
   /** Staff only from here on. `stale` is asked of the database at reading. */
+  /** By question. */
+  terms: Record<string, QuestionTerms>;
   stale: boolean | null;
   staleReason: string | null;
   summary: RunSummary | null;

@@ -1,7 +1,19 @@
+import type {
+  Capacitor,
+  Circuit,
+  Listing,
+  Regulator,
+  SecondaryNetwork,
+  Section,
+  ServiceTie,
+  ServiceTransformer,
+  Substation,
+  TimeCurve,
+} from './study-utility.ts';
+
 /*
- * The study file, format feederwright.study/1: a network model as it stands for one run, and the project in question.
- * Impedances are in ohms (per km in lines), voltages in kV line to line, lengths in km, ratings in kVA or kA.
- * A missing list is an empty one. The engine's reader (workers/engine/read-study.ts) checks every rule.
+ * The study file, format feederwright.study/1: a network model as it stands for one run, and the project in question. Impedances
+ * are in ohms (per km in lines), voltages in kV line to line, lengths in km, ratings in kVA or kA. A missing list is an empty one.
  */
 
 export const studyFormat = 'feederwright.study/1';
@@ -24,7 +36,15 @@ export type Node = {
 
 export type SourceStrength = { z1: Impedance; z2?: Impedance; z0?: Impedance };
 
-export type Source = { id: string; node: string; max: SourceStrength; min?: SourceStrength };
+export type Source = {
+  id: string;
+  node: string;
+  max: SourceStrength;
+  min?: SourceStrength;
+  /** Voltage that the source holds in a load flow, over nominal: at peak load and at minimum load; 1 unless given. */
+  peakVoltagePu?: number;
+  minimumVoltagePu?: number;
+};
 
 /** An element that names in `with` the machine or inverter it came with leaves state `none` together with it. */
 export type Line = {
@@ -40,6 +60,8 @@ export type Line = {
   /** The feeder of the model that the line belongs to. */
   circuit?: string;
   ampacityA?: number;
+  /** Part of the three-phase backbone that leaves the substation. */
+  mainline?: boolean;
   with?: string;
 };
 
@@ -92,6 +114,11 @@ export type Machine = {
   ratedPowerFactor?: number;
   /** The most it may send out, where the agreement limits that. */
   exportKw?: number;
+  /** In a load flow: positive sends vars into the grid, negative takes them; 1 unless given. */
+  powerFactor?: number;
+  storage?: boolean;
+  listing?: Listing;
+  service?: ServiceTie;
 };
 
 export type Inverter = {
@@ -101,11 +128,21 @@ export type Inverter = {
   kva: number;
   faultCurrentPu: number;
   faultAngleDeg?: number;
+  /** Rated voltage, line to line; of a one-phase unit line to neutral times √3: 0.416 of one for 240 V. */
+  ratedKv?: number;
   exportKw?: number;
   powerFactor?: number;
   tracking?: boolean;
   storage?: boolean;
   listed?: boolean;
+  /** What it makes power from; photovoltaic alone has daytime minimum load. */
+  energy?: 'photovoltaic' | 'storage' | 'wind' | 'other';
+  /** Vars against voltage: pairs of voltage over nominal and vars over kva (positive into the grid), by rising voltage. */
+  voltVar?: [volts: number, vars: number][];
+  /** A unit that can hold voltage by itself is a voltage source with these; "unknown" where nobody says. */
+  gridForming?: { z1: Impedance; z2?: Impedance; z0?: Impedance } | 'unknown';
+  listing?: Listing;
+  service?: ServiceTie;
 };
 
 export type Load = {
@@ -118,6 +155,12 @@ export type Load = {
   /** What part of its kVA is motors, and their locked-rotor reactance, 1/6 unless given; see `options.motorLoad`. */
   motorFraction?: number;
   motorLockedRotorPu?: number;
+  /** How it is tied: "wye" to the earthed neutral (the default), "delta" between phases. */
+  connection?: 'wye' | 'delta';
+  /** How its power follows the voltage in a load flow: constant "power" (the default), "current" or "impedance". */
+  model?: 'power' | 'current' | 'impedance';
+  /** One customer so large that the section's minimum hangs on it. */
+  customer?: string;
   with?: string;
 };
 
@@ -139,21 +182,19 @@ export type Device = {
   ratingBasis?: string;
   /** Opens by itself and so bounds a line section; unless said, breakers and reclosers do. */
   sectionalizing?: boolean;
+  /** Shortest time open before it closes again; 0 where it does not reclose. */
   deadTimeS?: number;
+  /** Whether closing waits for a dead line, or is done only in step with it. */
+  voltageSupervised?: boolean;
+  /** Trips only for current that leaves the substation. */
+  directional?: boolean;
+  ratedKv?: number;
+  /** Of switches and elbows: the fault current that they may be closed on. */
+  faultClosingKa?: number;
+  /** Tripping times. */
+  phaseCurve?: TimeCurve;
+  groundCurve?: TimeCurve;
 };
-
-/** All that lies beyond `device`, seen from the source. */
-export type Section = {
-  id: string;
-  device: string;
-  peakKw?: number;
-  minimumKw?: number;
-  daytimeFixedKw?: number;
-  daytimeTrackingKw?: number;
-};
-
-/** What is known of a feeder of the model; lines and devices name it in `circuit`. */
-export type Circuit = { id: string; lineType?: 'three-wire' | 'four-wire' };
 
 /**
  * A way to run the feeder besides the one that the lists describe: a bus tie closed, the alternate feed in. Fault currents
@@ -210,12 +251,17 @@ export type ElementLists = {
   inverters?: Inverter[];
   loads?: Load[];
   devices?: Device[];
+  capacitors?: Capacitor[];
 };
 
 export type Feeder = ElementLists & {
   nodes: Node[];
   sections?: Section[];
   circuits?: Circuit[];
+  substations?: Substation[];
+  serviceTransformers?: ServiceTransformer[];
+  secondaryNetworks?: SecondaryNetwork[];
+  regulators?: Regulator[];
   scenarios?: Scenario[];
   conductors?: Conductor[];
   cables?: Cable[];
@@ -223,7 +269,13 @@ export type Feeder = ElementLists & {
 };
 
 /** The project in question: its point of interconnection is a node of the feeder; its lists join in state `after`. */
-export type Project = ElementLists & { id: string; node: string; nodes?: Node[] };
+export type Project = ElementLists & {
+  id: string;
+  node: string;
+  nodes?: Node[];
+  /** Interrupting rating of the customer's main panel. */
+  panelInterruptingKa?: number;
+};
 
 export type StudyOptions = {
   /** "prefault", the default: every source and machine at one voltage before the fault. "iec60909": IEC 60909-0. */

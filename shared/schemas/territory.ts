@@ -61,7 +61,8 @@ export interface NetworkModelView {
 /** A model drawn on the map (staff only): one entry a line, weight follows the number of phases. */
 export interface ModelDrawing {
   code: string;
-  lines: { circuit: string; phases: string; path: [lng: number, lat: number][] }[];
+  /** `to` is the node at the end of the path. */
+  lines: { circuit: string; phases: string; path: [lng: number, lat: number][]; to: string }[];
   devices: { id: string; kind: string; lat: number; lng: number }[];
   substation: { lat: number; lng: number; name: string };
 }

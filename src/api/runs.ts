@@ -1,4 +1,4 @@
-import type { Waiver } from '../../shared/schemas/applications.ts';
+import type { Waiver, WaiverAgreement } from '../../shared/schemas/applications.ts';
 import type { RunView } from '../../shared/schemas/runs.ts';
 import { getJson, sendJson } from './client.ts';
 
@@ -10,6 +10,9 @@ export const listRuns = (applicationId: string) =>
 export const screenAgain = (applicationId: string) =>
   sendJson<RunView>('POST', `/api/applications/${encodeURIComponent(applicationId)}/runs`, {});
 export const waiveFinding = (id: string, body: Waiver) => sendJson<RunView>('PUT', `${at(id)}/waivers`, body);
+/** The second person's, with the reason as it was read. */
+export const agreeToWaiver = (id: string, body: WaiverAgreement) =>
+  sendJson<RunView>('PUT', `${at(id)}/waivers/agreement`, body);
 export const takeBackWaiver = (id: string, question: string, element: string) => {
   const query = new URLSearchParams({ question, element });
   return sendJson<RunView>('DELETE', `${at(id)}/waivers?${query}`);

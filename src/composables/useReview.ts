@@ -9,7 +9,7 @@ import {
   decideApplication,
   recordMove,
 } from '../api/applications.ts';
-import { screenAgain, takeBackWaiver, waiveFinding } from '../api/runs.ts';
+import { agreeToWaiver, screenAgain, takeBackWaiver, waiveFinding } from '../api/runs.ts';
 
 /** What a reviewer may do with one folder; every act carries the version that was on the screen. */
 export function useReview(
@@ -45,6 +45,8 @@ export function useReview(
     screenAgain: () => again(screenAgain(shown().publicId)),
     waive: (runId: string, finding: Finding, reason: string) =>
       again(waiveFinding(runId, { question: finding.id, element: finding.element, reason })),
+    agree: (runId: string, finding: Finding, reason: string) =>
+      again(agreeToWaiver(runId, { question: finding.id, element: finding.element, reason })),
     takeBackWaiver: (runId: string, finding: Finding) =>
       again(takeBackWaiver(runId, finding.id, finding.element ?? '')),
   };

@@ -1,5 +1,11 @@
-import { createRouter, createWebHistory, type RouteRecordRaw } from 'vue-router';
+import {
+  createRouter,
+  createWebHistory,
+  type RouteLocationNormalized,
+  type RouteRecordRaw,
+} from 'vue-router';
 import type { Role } from '../../shared/schemas/sessions.ts';
+import { areaKeys } from '../../shared/rule-areas.ts';
 import { turnOutcome } from '../composables/useOutcome.ts';
 import { movePageFocus } from '../composables/usePageFocus.ts';
 import { checkPage } from './guards.ts';
@@ -7,6 +13,12 @@ import { checkPage } from './guards.ts';
 const applies: readonly Role[] = ['applicant'];
 const staff: readonly Role[] = ['reviewer', 'planner', 'administrator', 'auditor'];
 const readsSettings: readonly Role[] = ['administrator', 'auditor'];
+const writesRules: readonly Role[] = ['administrator'];
+
+const readRuleSetPath = ({ params }: RouteLocationNormalized) => ({
+  ...params,
+  number: Number(params.number),
+});
 
 const routes: RouteRecordRaw[] = [
   { path: '/', redirect: { name: 'sign-in' } },
@@ -75,19 +87,68 @@ const routes: RouteRecordRaw[] = [
     component: () => import('../views/desk/FolderView.vue'),
   },
   {
+    path: '/desk/:id/sheet',
+    name: 'sheet',
+    props: true,
+    meta: { roles: staff },
+    component: () => import('../views/desk/SheetView.vue'),
+  },
+  {
     path: '/models',
     name: 'models',
     meta: { roles: staff },
     component: () => import('../views/models/ModelsView.vue'),
   },
 
+  {
+    path: '/models/:code/room',
+    name: 'room',
+    props: true,
+    meta: { roles: staff },
+    component: () => import('../views/models/RoomView.vue'),
+  },
+
   // For everybody, and settings
+  { path: '/reports', name: 'reports', component: () => import('../views/reports/ReportsView.vue') },
+  {
+    path: '/reports/new',
+    name: 'report-request',
+    meta: { roles: applies },
+    component: () => import('../views/reports/ReportRequestView.vue'),
+  },
+  {
+    path: '/reports/:id',
+    name: 'report',
+    props: true,
+    component: () => import('../views/reports/ReportView.vue'),
+  },
   { path: '/mailbox', name: 'mailbox', component: () => import('../views/mailbox/MailboxView.vue') },
   {
     path: '/settings',
     name: 'settings',
     meta: { roles: readsSettings },
     component: () => import('../views/settings/SettingsView.vue'),
+  },
+  {
+    path: '/settings/rule-sets/:code/:number(\\d+)',
+    name: 'rule-set',
+    props: readRuleSetPath,
+    meta: { roles: staff },
+    component: () => import('../views/rule-sets/RuleSetView.vue'),
+  },
+  {
+    path: '/settings/rule-sets/:code/:number(\\d+)/publish',
+    name: 'rule-set-publish',
+    props: readRuleSetPath,
+    meta: { roles: writesRules },
+    component: () => import('../views/rule-sets/RuleSetPublishView.vue'),
+  },
+  {
+    path: `/settings/rule-sets/:code/:number(\\d+)/:area(${areaKeys.join('|')})`,
+    name: 'rule-set-form',
+    props: readRuleSetPath,
+    meta: { roles: writesRules },
+    component: () => import('../views/rule-sets/RuleSetFormView.vue'),
   },
   {
     path: '/not-allowed',

@@ -40,7 +40,7 @@ const isTold = (page: Page) => page.getByRole('main').getByRole('alert').first()
 test('of two reviewers who take a folder at once one has it, and the other is told by name', async () => {
   const both = [tobiah.page, yuki.page];
   await Promise.all(both.map((page) => openFolder(page, 'findings')));
-  for (const page of both) await page.locator('[data-question]').first().waitFor();
+  for (const page of both) await page.locator('[data-question]').first().waitFor({ state: 'attached' });
   await Promise.all(both.map(take));
   const outcomes = await Promise.all(
     both.map((page) => Promise.race([has(page).then(() => 'has it'), isTold(page)])),
@@ -73,7 +73,7 @@ test('a decision on what a colleague has decided meanwhile is refused in words, 
   await first.getByRole('button', { name: 'Confirm complete' }).click();
   await first.getByRole('dialog').getByRole('button', { name: 'Confirm complete' }).click();
   await first.getByRole('heading', { name: /^Findings/ }).waitFor();
-  await first.locator('[data-question]').first().waitFor();
+  await first.locator('[data-question]').first().waitFor({ state: 'attached' });
   await Promise.all([first, second].map(writeDecision));
   // From here on nothing new reaches the second, and a page that cannot ask again keeps what it shows.
   await second.route(`**/api/applications/${project.id}`, (route) => route.abort());

@@ -98,7 +98,7 @@ async function confirmComplete(project: HandedIn): Promise<void> {
   await page.getByRole('dialog').getByRole('button', { name: 'Confirm complete' }).click();
   await page.getByRole('heading', { name: /^Findings/ }).waitFor();
   await page.getByText('Initial review', { exact: true }).first().waitFor();
-  await findings(page).first().waitFor();
+  await findings(page).first().waitFor({ state: 'attached' });
   expect(await isSameDocument(page)).toBe(true);
 }
 

@@ -37,7 +37,7 @@ async function findApplication({ context }: Visit, query: string): Promise<strin
   return row.publicId;
 }
 
-const sheets = ['findings', 'site', 'equipment', 'papers', 'decision'];
+const sheets = ['findings', 'trials', 'site', 'equipment', 'papers', 'decision'];
 
 /** What everybody at the utility sees. */
 async function listDeskStops(visit: Visit): Promise<Stop[]> {
@@ -46,8 +46,15 @@ async function listDeskStops(visit: Visit): Promise<Stop[]> {
     { path: '/desk' },
     ...sheets.map((sheet) => ({ path: `/desk/${reviewed}?sheet=${sheet}` })),
     { path: '/models' },
+    { path: '/models/MB/room' },
     { path: '/mailbox' },
   ];
+}
+
+/** The others at the utility see the same pages with less to press: those that differ most, and no page twice. */
+async function listReaderStops(visit: Visit): Promise<Stop[]> {
+  const reviewed = await findApplication(visit, 'stage=initial-review');
+  return [{ path: '/desk' }, { path: `/desk/${reviewed}?sheet=findings` }];
 }
 
 async function listReviewStops(visit: Visit): Promise<Stop[]> {
@@ -72,6 +79,13 @@ async function listRecordStops(visit: Visit): Promise<Stop[]> {
   return [{ path: `/desk/${reviewed}?sheet=record` }, { path: '/settings' }];
 }
 
+const draftRules = '/settings/rule-sets/85-percent/1';
+const ruleStops: Stop[] = [
+  { path: draftRules },
+  ...['sizes', 'protection', 'fees'].map((area) => ({ path: `${draftRules}/${area}` })),
+  { path: `${draftRules}/publish`, act: press('Publish') },
+];
+
 const parts = ['project', 'site', 'equipment', 'connection', 'papers'];
 
 const stops: Record<string, (visit: Visit) => Promise<Stop[]>> = {
@@ -89,6 +103,8 @@ const stops: Record<string, (visit: Visit) => Promise<Stop[]>> = {
       { path: `/projects/${reviewed}/submitted` },
       { path: `/projects/${incomplete}` },
       { path: `/projects/${incomplete}/form` },
+      { path: '/reports' },
+      { path: '/reports/new', act: press('Ask for the report') },
       { path: '/mailbox' },
       { path: '/mailbox', act: openFirstMessage },
       { path: '/desk' },
@@ -97,9 +113,21 @@ const stops: Record<string, (visit: Visit) => Promise<Stop[]>> = {
     ];
   },
   tobiah: async (visit) => [...(await listDeskStops(visit)), ...(await listReviewStops(visit))],
-  maren: listDeskStops,
-  adaeze: async (visit) => [...(await listDeskStops(visit)), ...(await listRecordStops(visit))],
-  pell: async (visit) => [...(await listDeskStops(visit)), ...(await listRecordStops(visit))],
+  maren: async (visit) => [
+    ...(await listReaderStops(visit)),
+    { path: '/models' },
+    { path: '/models/MB/room' },
+  ],
+  adaeze: async (visit) => [
+    ...(await listReaderStops(visit)),
+    ...(await listRecordStops(visit)),
+    ...ruleStops,
+  ],
+  pell: async (visit) => [
+    ...(await listReaderStops(visit)),
+    ...(await listRecordStops(visit)),
+    { path: '/reports' },
+  ],
 };
 
 interface Fault {
@@ -157,7 +185,7 @@ async function walk(visit: Visit, route: readonly Stop[]): Promise<Fault[]> {
 
 /** Chromium writes a refusal to the console, too; these were asked for. */
 const isRefusal = (words: string) =>
-  /status of (400|404)/.test(words) && /A{22}|\/submission|\/session/.test(words);
+  /status of (400|404)/.test(words) && /A{22}|\/submission|\/session|\/pre-application-reports/.test(words);
 
 describe.concurrent('every page', { timeout: 300_000 }, () => {
   async function check(visit: Visit, route: readonly Stop[]): Promise<void> {

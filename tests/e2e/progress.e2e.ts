@@ -51,7 +51,7 @@ async function followRun(visit: Visit, name: string): Promise<number[]> {
       shown = percent;
     }
     letWorkerGo();
-    await page.locator('[data-question]').first().waitFor();
+    await page.locator('[data-question]').first().waitFor({ state: 'attached' });
     expect(await isSameDocument(page)).toBe(true);
     return await readProgress();
   } finally {

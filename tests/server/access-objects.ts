@@ -1,8 +1,10 @@
 import { createHash } from 'node:crypto';
 import { mkdir, writeFile } from 'node:fs/promises';
 import { join } from 'node:path';
+import { inTransaction } from '../../db/connection.ts';
 import { insertApplication } from '../../db/repositories/applications.ts';
 import { saveDraft } from '../../db/repositories/drafts.ts';
+import { insertPreApplicationReport } from '../../db/repositories/pre-application-reports.ts';
 import type { Subject } from '../../server/access.ts';
 import type { Actor, Deps } from '../../server/context.ts';
 import { storeMessage } from '../../server/local/mailbox-store.ts';
@@ -87,6 +89,34 @@ async function insertMessage({ config }: Deps, person: Actor, others: Actor[]): 
   return storeMessage(config.mailboxDir, Buffer.from(mail.join('\r\n')), new Date());
 }
 
+/** A report of a place of which little is known. */
+async function insertReport({ db }: Deps, world: FixtureWorld, person: Actor): Promise<string> {
+  const publicId = newPublicId();
+  const { ruleSetVersionId, model } = world;
+  await inTransaction(db, (trx) =>
+    insertPreApplicationReport(trx, {
+      ...{
+        publicId,
+        organisationId: person.organisationId!,
+        requestedBy: person.id,
+        requestedAt: new Date(),
+      },
+      request: { lat: 0, lng: 0, phases: 'ABC' },
+      ...{ modelVersionId: model.versionId, nodeId: 'n2', circuit: 'FX-1', ruleSetVersionId },
+      aheadRevisionIds: [],
+      figures: {
+        ...{ kv: 12.47, highSideKv: null, phases: 'ABC', lineType: null, distanceKm: 1, isMainline: null },
+        ...{ supply: 'radial', bankKva: null, circuitPeakKw: null, circuitMinimumKw: null },
+        ...{ existingOnCircuitKw: 0, queuedOnCircuitKw: 0, existingOnBankKw: 0, queuedOnBankKw: 0 },
+        ...{ availableOnBankKw: null, sections: [], devices: [], regulators: 0, capacitorsOnCircuit: 0 },
+        ...{ hasTapChanger: null, limitingAmpacityA: null, threePhaseFaultA: null, lineGroundFaultA: null },
+        ...{ nearRating: 0, stabilityLimited: null },
+      },
+    }),
+  );
+  return publicId;
+}
+
 /** One of each subject, whole enough that every route can work with it. */
 export async function insertObjects(
   deps: Deps,
@@ -102,5 +132,6 @@ export async function insertObjects(
     run,
     file: await insertFile(deps, person, stage === 'draft' ? undefined : application),
     message: await insertMessage(deps, person, others),
+    report: await insertReport(deps, world, person),
   };
 }

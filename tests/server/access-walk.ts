@@ -69,7 +69,7 @@ async function send(
 function isInReach(rule: Rule, role: Role, whose: Whose): boolean {
   if (role === 'applicant' && (whose === 'own' || whose === 'draft')) return true;
   if (whose === 'missing' || rule.roles[role] !== 'any') return false;
-  const canBeUnfinished = rule.subject !== 'message';
+  const canBeUnfinished = rule.subject !== 'message' && rule.subject !== 'report';
   return !(whose === 'draft' && canBeUnfinished);
 }
 

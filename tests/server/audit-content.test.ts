@@ -1,4 +1,5 @@
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { proFormaRuleSet } from '../../shared/rules/pro-forma.ts';
 import { fillDraft, pressSubmit } from '../support/fixture-handing-in.ts';
 import { finishRun, getRow, handIn, makeFindings } from '../support/fixture-applications.ts';
 import { solarAnswers } from '../support/fixture-answers.ts';
@@ -57,7 +58,9 @@ describe('the trail tells what was decided, not only that something was', () => 
       ...body,
       basisSha256: run.basis_sha256.toString('hex'),
       resultSha256: run.result_sha256.toString('hex'),
-      setAside: [{ question: 'contribution', element: '', reason: aside.reason }],
+      setAside: [
+        { question: 'contribution', element: '', reason: aside.reason, by: 'Mira Holt', agreedBy: null },
+      ],
     });
   });
 
@@ -67,7 +70,7 @@ describe('the trail tells what was decided, not only that something was', () => 
     const place = await desk.deps.db('queue_entries').where({ application_id: id }).first('position');
     expect((await findEntry(publicId, 'confirm-complete')).after.about).toEqual({
       queuePosition: place.position,
-      ruleSet: { code: 'pro-forma', number: 1 },
+      ruleSet: { code: 'pro-forma', number: proFormaRuleSet.number },
     });
   });
 

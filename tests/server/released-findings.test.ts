@@ -1,8 +1,12 @@
 import { expect, it } from 'vitest';
 import { releaseFindings } from '../../server/services/released-findings.ts';
 import { describeFinding } from '../../shared/finding-words.ts';
-import { askedQuestions, type Finding } from '../../shared/schemas/findings.ts';
+import type { Finding } from '../../shared/schemas/findings.ts';
+import { proFormaRuleSet } from '../../shared/rules/pro-forma.ts';
+import { listAsked } from '../../shared/schemas/rule-sets.ts';
 import { makeFindings } from '../support/fixture-applications.ts';
+
+const askedQuestions = listAsked(proFormaRuleSet);
 
 const lacking = (element: string): Finding[] =>
   makeFindings(

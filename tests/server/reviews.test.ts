@@ -1,4 +1,5 @@
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { proFormaRuleSet } from '../../shared/rules/pro-forma.ts';
 import type { ApplicationView } from '../../shared/schemas/applications.ts';
 import { finishRun, handIn, makeFindings } from '../support/fixture-applications.ts';
 import { act, decide, makeFixtureDesk, screen, see, type FixtureDesk } from '../support/fixture-desk.ts';
@@ -67,7 +68,7 @@ describe('the life of an application', () => {
       stage: 'initial-review',
       queuePosition: 1,
       aheadCount: 0,
-      ruleSet: { code: 'pro-forma', number: 1 },
+      ruleSet: { code: 'pro-forma', number: proFormaRuleSet.number },
       run: { kind: 'official', state: 'queued', basis: { modelCode: 'FX', ahead: [], revisionNumber: 1 } },
     });
     const runId = confirmed.run!.publicId;

@@ -127,6 +127,7 @@ describe('the network models', () => {
         [-31, 42.02],
         [-31.01, 42.02],
       ],
+      to: 'n4',
     });
     expect(drawing.devices[0]).toEqual({ id: 'cb1', kind: 'breaker', lng: -31, lat: 42 });
     expect(drawing.substation).toEqual({ lat: 42, lng: -31, name: 'Fixture Head' });

@@ -31,9 +31,16 @@ describe('describeFinding', () => {
     expect(close).toMatchObject({ value: '87.5004\u00a0%', limit: 'at most 87.5000\u00a0%' });
   });
 
+  it('never prints 87.51 as 87.5, nor 87.4999 as the limit', () => {
+    const say = (value: number) => describeFinding({ ...duty, verdict: 'outside', value });
+    expect(say(87.51)).toMatchObject({ value: '87.51\u00a0%', limit: 'at most 87.50\u00a0%' });
+    expect(say(87.4999)).toMatchObject({ value: '87.4999\u00a0%', limit: 'at most 87.5000\u00a0%' });
+    expect(say(87.5).value).toBe('87.5\u00a0%');
+  });
+
   it('names the side of the limit', () => {
     expect(describeFinding({ ...duty, comparison: '<' }).limit).toBe('less than 87.5\u00a0%');
-    expect(describeFinding({ ...duty, comparison: '>=', unit: '' }).limit).toBe('at least 87.5');
+    expect(describeFinding({ ...duty, comparison: '>=', unit: '' }).limit).toBe('at least 87.50');
   });
 
   it('prints whole amperes', () => {

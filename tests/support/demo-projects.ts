@@ -3,7 +3,7 @@ import { typePin, type ProjectStory } from './handing-in.ts';
 
 const contactEmail = 'ines@greenmarch.example';
 
-/** A megawatt of solar where it is no trouble; its pin is typed. */
+/** A megawatt of solar where it is no trouble, grounded through a reactor that leaves the feeder's own ground relays their current; its pin is typed. */
 export function makeSolarStory(name: string): ProjectStory {
   return {
     name,
@@ -12,6 +12,7 @@ export function makeSolarStory(name: string): ProjectStory {
     model: 'Quern Electric Q-1000 Field',
     transformer: 'Ivory & Brand Field 1250/25',
     windings: 'YNd1',
+    utilityReactorOhm: 40,
   };
 }
 

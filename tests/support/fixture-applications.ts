@@ -15,7 +15,8 @@ import { requestRun } from '../../server/services/run-requests.ts';
 import { moveApplication } from '../../server/services/transitions.ts';
 import { proFormaRuleSet } from '../../shared/rules/pro-forma.ts';
 import { localDate } from '../../shared/rules/business-days.ts';
-import { askedQuestions, type Finding } from '../../shared/schemas/findings.ts';
+import type { Finding, QuestionId } from '../../shared/schemas/findings.ts';
+import { listAsked, type RuleSet } from '../../shared/schemas/rule-sets.ts';
 import { solarAnswers } from './fixture-answers.ts';
 import type { FixtureWorld } from './fixture-world.ts';
 
@@ -25,8 +26,9 @@ export function makeContext(actor: Actor, now: Date): SignedInContext {
 
 /** Every question answered within its limit, but for what is said otherwise. */
 export function makeFindings(others: Partial<Finding>[] = []): Finding[] {
-  return askedQuestions.map(({ id, question }) => {
-    const { limits, unit, source } = proFormaRuleSet.rules[id];
+  const { rules }: RuleSet = proFormaRuleSet;
+  return listAsked(proFormaRuleSet).map(({ id, question }) => {
+    const { limits, unit, source } = rules[id as QuestionId]!;
     const [{ limit, comparison }] = limits;
     const value = limit === null ? null : comparison === '>=' ? limit * 10 : limit / 2;
     const within: Finding = {

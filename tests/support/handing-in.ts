@@ -10,6 +10,8 @@ export interface ProjectStory {
   model: string;
   transformer: string;
   windings: string;
+  /** In the neutral of the utility-side winding. */
+  utilityReactorOhm?: number;
   /** Asked of synchronous machines only. */
   machineNeutral?: string;
   paper?: { name: string; content: Buffer };
@@ -62,6 +64,11 @@ async function fillParts(page: Page, story: ProjectStory): Promise<void> {
   await page.getByLabel('Yes', { exact: true }).check();
   await choose(page.getByLabel('Transformer', { exact: true }), story.transformer);
   await choose(page.getByLabel('Winding connection'), story.windings);
+  if (story.utilityReactorOhm !== undefined) {
+    const neutral = page.getByRole('group', { name: 'Neutral on the utility side' });
+    await neutral.getByLabel('Grounded through a reactor or resistor', { exact: true }).check();
+    await neutral.getByLabel('Reactance, in ohms').fill(String(story.utilityReactorOhm));
+  }
   if (story.machineNeutral !== undefined) {
     const neutral = page.getByRole('group', { name: 'Neutral of the synchronous machines' });
     await neutral.getByLabel(story.machineNeutral, { exact: true }).check();

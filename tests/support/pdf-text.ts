@@ -1,6 +1,6 @@
 import { inflateSync } from 'node:zlib';
 
-/* Reads the text of a PDF as Chromium writes it: fonts by glyph number, each with its table back to characters. */
+/* Reads the text of a PDF as Chromium and pdfkit write it: fonts by glyph number, each with its table back to characters. */
 
 interface Font {
   /** Hexadecimal digits of a glyph's number: fonts drawn as pictures (Type 3) have one byte, all others two. */
@@ -23,7 +23,14 @@ function readGlyphs(table: string): Font['glyphs'] {
     }
   }
   for (const [, block] of table.matchAll(/beginbfrange(.*?)endbfrange/gs)) {
-    for (const [, first, last, start] of block!.matchAll(/<(\w+)>\s*<(\w+)>\s*<(\w+)>/g)) {
+    for (const [, first, list] of block!.matchAll(/<(\w+)>\s*<\w+>\s*\[(.*?)\]/gs)) {
+      // One glyph may stand for several characters: <0066 0069> is a ligature.
+      const characters = (list!.match(/<[^>]*>/g) ?? []).map((each) => each.replace(/[^0-9A-Fa-f]/g, ''));
+      characters.forEach((each, place) => glyphs.set(fromHex(first!) + place, readCharacters(each)));
+    }
+    for (const [, first, last, start] of block!
+      .replace(/\[.*?\]/gs, '')
+      .matchAll(/<(\w+)>\s*<(\w+)>\s*<(\w+)>/g)) {
       for (let glyph = fromHex(first!); glyph <= fromHex(last!); glyph += 1) {
         glyphs.set(glyph, String.fromCharCode(fromHex(start!) + glyph - fromHex(first!)));
       }

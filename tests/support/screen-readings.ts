@@ -13,6 +13,8 @@ const textOf = async (part: Locator) => ((await part.count()) === 0 ? null : awa
 
 /** The findings as they stand on a page, in the order of the page. */
 export async function readFindings(page: Page): Promise<ShownFinding[]> {
+  // What is folded away has no text to read.
+  await page.evaluate(() => document.querySelectorAll('details').forEach((each) => (each.open = true)));
   const entries = await page.locator('[data-question]').all();
   return Promise.all(
     entries.map(async (entry) => ({

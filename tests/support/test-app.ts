@@ -34,6 +34,7 @@ export interface TestApp {
   people: Record<Role | 'stranger' | 'closed', TestPerson>;
   /** What was asked of the queue and of the live events, which do nothing more here. */
   enqueued: { runId: number; attempt: number }[];
+  enqueuedRooms: { roomId: number; attempt: number }[];
   published: LiveEvent[];
   /** Another server on the same database, with its own counters. */
   another(overrides?: Partial<Config>): Express;
@@ -89,19 +90,29 @@ export async function makeTestApp(settings: TestAppSettings = {}): Promise<TestA
   const config = { ...makeConfig(directory, database), ...settings.config };
   const log = settings.logTo ? createLog('info', 'test', settings.logTo) : createLog('silent', 'test');
   const enqueued: TestApp['enqueued'] = [];
+  const enqueuedRooms: TestApp['enqueuedRooms'] = [];
   const published: LiveEvent[] = [];
   const deps: Deps = {
     db,
     config,
     log,
-    queue: { enqueue: async (runId, attempt) => void enqueued.push({ runId, attempt }) },
+    queue: {
+      enqueue: async (runId, attempt) => void enqueued.push({ runId, attempt }),
+      enqueueRoom: async (roomId, attempt) => void enqueuedRooms.push({ roomId, attempt }),
+    },
     events: { publish: async (event) => void published.push(event), subscribe: () => () => undefined },
+    compute: {
+      // The real engine without a process of its own, loaded where a test asks it something.
+      ask: async (kind, question) =>
+        (await import('../../workers/answer-question.ts')).answerQuestion(kind, question),
+    },
   };
   return {
     app: createApp(deps, settings.routes),
     deps,
     people: await insertPeople(deps),
     enqueued,
+    enqueuedRooms,
     published,
     another: (overrides = {}) => createApp({ ...deps, config: { ...config, ...overrides } }, settings.routes),
     async stop() {

@@ -4,8 +4,9 @@ import { findApplicationById } from '../../db/repositories/applications.ts';
 import { getBlob } from '../../db/repositories/blobs.ts';
 import { findRun } from '../../db/repositories/runs.ts';
 import { claimRun } from '../../db/repositories/run-turns.ts';
-import { askedQuestions } from '../../shared/schemas/findings.ts';
-import { ComputeFault } from '../../workers/compute-client.ts';
+import { proFormaRuleSet } from '../../shared/rules/pro-forma.ts';
+import { listAsked } from '../../shared/schemas/rule-sets.ts';
+import { ComputeFault } from '../../server/compute.ts';
 import { computeStudy } from '../../workers/compute-study.ts';
 import { screenRun } from '../../workers/jobs/screen.ts';
 import { makeTestDatabase, type TestDatabase } from '../support/database.ts';
@@ -60,7 +61,7 @@ describe('screenRun', () => {
     ).toBe(true);
     expect(JSON.parse(study.toString()).project.machines).toHaveLength(1);
     const result = JSON.parse((await getBlob(test.db, run.resultSha256 as Buffer)).toString());
-    expect(result.findings.length).toBeGreaterThanOrEqual(askedQuestions.length);
+    expect(result.findings.length).toBeGreaterThanOrEqual(listAsked(proFormaRuleSet).length);
 
     const findings = await listFindings(id);
     expect(findings.map((row) => JSON.parse(row.detail))).toEqual(result.findings);

@@ -18,7 +18,7 @@ export function measureWholeStudy(kind: NetworkKind, count: number) {
   const check = shortestMs(() => checkStudy(study), runs);
   const prepare = shortestMs(() => prepareModel(study), runs);
   // A small study needs more runs until its code is compiled, which counts as processor time of the run.
-  const { result, whole, steps } = timeStudy(study, count < 100_000 ? 15 : 4);
+  const { result, whole, steps } = timeStudy(study, count < 100_000 ? 15 : 8);
   const write = shortestMs(() => JSON.stringify(result), runs);
   const screened = shortestMs(() => runStudy(withProject, proFormaRuleSet), 2);
   return {

@@ -1,4 +1,5 @@
 import type { Complex } from './complex.ts';
+import { nodeAt } from './model-parts.ts';
 import type { Wiring } from './wiring.ts';
 
 /*
@@ -91,13 +92,16 @@ export type CurrentSource = Belonging & { node: number; phases: number; currents
 /** Phases A, B, C. */
 export type PhaseTriple = readonly [Complex, Complex, Complex];
 
+/** Index by id. */
+type Index = Pick<ReadonlyMap<string, number>, 'get'>;
+
 /** A study made ready: ids turned into indices and ohms into per unit, once for all cases. */
 export type Model = {
   baseMva: number;
   nodes: readonly ModelNode[];
-  nodeIndex: ReadonlyMap<string, number>;
+  nodeIndex: Index;
   branches: readonly Branch[];
-  branchIndex: ReadonlyMap<string, number>;
+  branchIndex: Index;
   switches: readonly ModelSwitch[];
   sources: readonly ModelSource[];
   machines: readonly Shunt[];
@@ -120,12 +124,12 @@ export function isPresent(choice: CaseChoice, element: Belonging): boolean {
 
 /** Whether a branch or switch is there with both of its nodes. */
 export function isInService(
-  { nodes }: Model,
+  model: Model,
   choice: CaseChoice,
   element: Belonging & { from: number; to: number },
 ): boolean {
-  const { from, to } = element;
-  return isPresent(choice, element) && isPresent(choice, nodes[from]!) && isPresent(choice, nodes[to]!);
+  const isThere = (node: number) => isPresent(choice, nodeAt(model, node));
+  return isPresent(choice, element) && isThere(element.from) && isThere(element.to);
 }
 
 /** Whether a switch joins its nodes. */

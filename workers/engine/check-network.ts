@@ -100,7 +100,7 @@ function checkPhases(
   };
   for (const kind of ['sources', 'machines', 'groundingBanks'] as const)
     needAtNodes(study[kind], () => allPhases);
-  for (const kind of ['inverters', 'loads'] as const) {
+  for (const kind of ['inverters', 'loads', 'capacitors'] as const) {
     const { elements } = study[kind].list;
     needAtNodes(study[kind], (index) => phasesOf(elements[index]!.phases));
   }

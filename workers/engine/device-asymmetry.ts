@@ -3,6 +3,7 @@ import type { Device } from '../../shared/schemas/study.ts';
 import { asymmetryFactor, kappa, peakFactor } from './asymmetry.ts';
 import { largestPhase, listBoltedFaults } from './faults.ts';
 import { findEquivalentXr } from './iec60909-peak.ts';
+import { branchAt, nodeAt } from './model-parts.ts';
 import { baseAmps } from './per-unit.ts';
 import { ratingFactor } from './rating-basis.ts';
 import type { SolvedCase } from './solve-case.ts';
@@ -64,9 +65,9 @@ export function findCountedFault(duty: DutyCase, solved: SolvedCase, device: Dev
 type Place = { node: number; kv: number; phases: number };
 
 function placeOf({ model }: SolvedCase, device: Device): Place {
-  const branch = model.branches[model.branchIndex.get(device.branch)!]!;
+  const branch = branchAt(model, model.branchIndex.get(device.branch)!);
   const node = branch[device.end];
-  return { node, kv: model.nodes[node]!.kv, phases: branch.phases };
+  return { node, kv: nodeAt(model, node).kv, phases: branch.phases };
 }
 
 function listFaults(solved: SolvedCase, { node, kv, phases }: Place) {

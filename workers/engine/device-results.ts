@@ -4,6 +4,7 @@ import type { Model } from './case.ts';
 import { isInService } from './case.ts';
 import { findDeviceAsymmetry } from './device-asymmetry.ts';
 import { findDeviceDuty } from './devices.ts';
+import { branchAt, nodeAt } from './model-parts.ts';
 import type { DutyState, OperatingCases, StateSolver } from './state-solver.ts';
 
 /** Reports the duty of every device of the feeder, by id: that of the model as it stands, and the scenario that is worse. */
@@ -25,8 +26,8 @@ export function reportDevices(
 }
 
 function reportDuty(model: Model, solver: StateSolver, state: DutyState, device: Device): DeviceDuty {
-  const branch = model.branches[model.branchIndex.get(device.branch)!]!;
-  const duty = solver.solveDuty(state, model.nodes[branch[device.end]]!.kv);
+  const branch = branchAt(model, model.branchIndex.get(device.branch)!);
+  const duty = solver.solveDuty(state, nodeAt(model, branch[device.end]).kv);
   // X/R says something of a rating; without one, two more networks would be solved for nothing.
   const asymmetry = device.interruptingKa === undefined ? undefined : findDeviceAsymmetry(duty, device);
   return { ...findDeviceDuty(duty.solved, device), ...asymmetry };
@@ -43,8 +44,9 @@ function findWorst(
   device: Device,
   most: number,
 ): WorstCase | undefined {
-  const branch = model.branches[model.branchIndex.get(device.branch)!]!;
-  const { kv } = model.nodes[branch[device.end]]!;
+  if (scenarios.length === 0) return undefined;
+  const branch = branchAt(model, model.branchIndex.get(device.branch)!);
+  const { kv } = nodeAt(model, branch[device.end]);
   let worst: WorstCase | undefined;
   for (const { scenario, solveDuty } of scenarios) {
     for (const state of states) {

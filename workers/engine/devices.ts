@@ -2,10 +2,11 @@ import type { DeviceDuty } from '../../shared/schemas/study-result.ts';
 import type { Device } from '../../shared/schemas/study.ts';
 import type { Branch, PhaseTriple } from './case.ts';
 import type { Complex } from './complex.ts';
-import { add, at, divide, multiply, subtract, zero } from './complex.ts';
+import { add, at, divide, multiply, scale, subtract, zero } from './complex.ts';
 import type { Fault } from './faults.ts';
 import { largestPhase, listBoltedFaults } from './faults.ts';
 import { phasesAt } from './laterals.ts';
+import { branchAt, nodeAt } from './model-parts.ts';
 import { negativeTurn, phasesOf, sequencesOf } from './open-circuit.ts';
 import { baseAmps } from './per-unit.ts';
 import type { SequenceNetwork } from './sequence-networks.ts';
@@ -21,22 +22,21 @@ import { findFaultPoint } from './solve-case.ts';
 /** Gives the duty of a device in one case; `fault` is null where nothing feeds the place. */
 export function findDeviceDuty(solved: SolvedCase, device: Device): DeviceDuty {
   const { model } = solved;
-  const branch = model.branches[model.branchIndex.get(device.branch)!]!;
+  const branch = branchAt(model, model.branchIndex.get(device.branch)!);
   const node = branch[device.end];
-  const amps = baseAmps(model.baseMva, model.nodes[node]!.kv);
+  const amps = baseAmps(model.baseMva, nodeAt(model, node).kv);
   const point = findFaultPoint(solved, node);
   let duty: Pick<DeviceDuty, 'dutyA' | 'fault' | 'side'> = { dutyA: 0, fault: null, side: 'branch' };
   let availableA = 0;
-  for (const fault of point ? listBoltedFaults(point, branch.phases) : []) {
-    availableA = Math.max(availableA, largestPhase(fault) * amps);
-    const fromBranch = currentFromBranch(solved, branch, device.end, fault);
-    const fromRest = subtractPhases(fault.currents, fromBranch);
-    for (const [side, currents] of [
-      ['branch', fromBranch],
-      ['rest', fromRest],
-    ] as const) {
-      const amperes = largestPhase({ currents }) * amps;
-      if (amperes > duty.dutyA) duty = { dutyA: amperes, fault: fault.kind, side };
+  if (point) {
+    const deliver = deliveryOf(solved, branch, device.end);
+    for (const { kind, currents } of listBoltedFaults(point, branch.phases)) {
+      const fromBranch = deliver(currents);
+      const branchA = largestPhase({ currents: fromBranch }) * amps;
+      const restA = largestPhase({ currents: subtractPhases(currents, fromBranch) }) * amps;
+      availableA = Math.max(availableA, largestPhase({ currents }) * amps);
+      if (branchA > duty.dutyA) duty = { dutyA: branchA, fault: kind, side: 'branch' };
+      if (restA > duty.dutyA) duty = { dutyA: restA, fault: kind, side: 'rest' };
     }
   }
   const loading = (amperes: number) =>
@@ -51,74 +51,81 @@ export function currentFromBranch(
   end: 'from' | 'to',
   fault: Fault,
 ): PhaseTriple {
+  return deliveryOf(solved, branch, end)(fault.currents);
+}
+
+/** As `currentFromBranch`, with what all faults at the end have in common found once. */
+function deliveryOf(
+  solved: SolvedCase,
+  branch: Branch,
+  end: 'from' | 'to',
+): (faultCurrents: PhaseTriple) => PhaseTriple {
   const { busOf } = solved.topology;
   const far = end === 'from' ? 'to' : 'from';
-  if (busOf[branch.from] !== -1 && busOf[branch.to] !== -1) {
-    return currentFromCoreBranch(solved, branch, end, fault);
-  }
-  return currentFromLateral(solved, branch[end], branch[far], fault);
+  if (busOf[branch.from] !== -1 && busOf[branch.to] !== -1) return deliveryOfCoreBranch(solved, branch, end);
+  return (faultCurrents) => currentFromLateral(solved, branch[end], branch[far], faultCurrents);
 }
 
 /** On a lateral the far side delivers its inverters' current, and the side of the tap all the rest. */
-function currentFromLateral(solved: SolvedCase, node: number, farNode: number, fault: Fault): PhaseTriple {
+function currentFromLateral(
+  solved: SolvedCase,
+  node: number,
+  farNode: number,
+  faultCurrents: PhaseTriple,
+): PhaseTriple {
   const { laterals } = solved.topology;
   const spot = laterals.spotOf[node]!;
   const farSpot = laterals.spotOf[farNode]!;
   const { spotFlow } = solved.openCircuit;
   const leadsAway = farSpot !== -1 && laterals.parent[farSpot] === spot;
-  return leadsAway ? phasesAt(spotFlow, farSpot) : subtractPhases(fault.currents, phasesAt(spotFlow, spot));
+  return leadsAway ? phasesAt(spotFlow, farSpot) : subtractPhases(faultCurrents, phasesAt(spotFlow, spot));
 }
+
+/** What a sequence brings over a branch: (drop + share·If)/z. */
+type Delivery = { drop: Complex; share: Complex; z: Complex };
 
 /*
  * In each sequence, with If out of node k and the branch's z to node m:
  *   I = (Vom − Vok)/z + (Zkk − Zmk)/z·If,  and at a star-delta transformer's earthed side I0 = (Z0kk·If0 − Vo0k)/z.
  */
-function currentFromCoreBranch(
-  solved: SolvedCase,
+function deliveryOfCoreBranch(
+  { topology, networks, openCircuit }: SolvedCase,
   branch: Branch,
   end: 'from' | 'to',
-  fault: Fault,
-): PhaseTriple {
-  const { topology, networks, openCircuit } = solved;
+): (faultCurrents: PhaseTriple) => PhaseTriple {
   const k = topology.busOf[branch[end]]!;
   const m = topology.busOf[branch[end === 'from' ? 'to' : 'from']]!;
-  const { i1, i2, i0 } = sequencesOf(fault.currents);
   const { v1, v2, v0 } = openCircuit;
   const turnOfFar = negativeTurn(topology.clockHours[m]! - topology.clockHours[k]!);
-  const path = branch.zeroSequence;
-  return phasesOf(
-    seriesCurrent(networks.positive, k, m, branch.z1, i1, subtract(at(v1, m), at(v1, k))),
-    seriesCurrent(
-      networks.negative,
-      k,
-      m,
-      branch.z1,
-      i2,
-      subtract(multiply(at(v2, m), turnOfFar), at(v2, k)),
-    ),
-    zeroSequenceCurrent(),
-  );
+  const series = (network: SequenceNetwork, z: Complex, drop: Complex): Delivery => {
+    return { drop, share: subtract(drivingPoint(network, k), transferOfPair(network, k, m)), z };
+  };
+  const drop2 = subtract(multiply(at(v2, m), turnOfFar), at(v2, k));
+  const positive = series(networks.positive, branch.z1, subtract(at(v1, m), at(v1, k)));
+  const negative = series(networks.negative, branch.z1, drop2);
+  const zeroSequence = findZeroSequence();
+  return (faultCurrents) => {
+    const { i1, i2, i0 } = sequencesOf(faultCurrents);
+    return phasesOf(
+      delivered(positive, i1),
+      delivered(negative, i2),
+      zeroSequence ? delivered(zeroSequence, i0) : zero,
+    );
+  };
 
-  function zeroSequenceCurrent(): Complex {
-    if (!networks.zero.hasPath[k]) return zero;
+  function findZeroSequence(): Delivery | undefined {
+    const path = branch.zeroSequence;
+    if (!networks.zero.hasPath[k]) return undefined;
     if (path.kind === 'series') {
-      return seriesCurrent(networks.zero, k, m, path.z, i0, subtract(at(v0, m), at(v0, k)));
+      return series(networks.zero, path.z, subtract(at(v0, m), at(v0, k)));
     }
-    if (path.kind === 'open' || path.end !== end) return zero;
-    return divide(subtract(multiply(drivingPoint(networks.zero, k), i0), at(v0, k)), path.z);
+    if (path.kind === 'open' || path.end !== end) return undefined;
+    return { drop: scale(at(v0, k), -1), share: drivingPoint(networks.zero, k), z: path.z };
   }
 }
 
-function seriesCurrent(
-  network: SequenceNetwork,
-  k: number,
-  m: number,
-  z: Complex,
-  faultCurrent: Complex,
-  prefaultDrop: Complex,
-): Complex {
-  const share = subtract(drivingPoint(network, k), transferOfPair(network, k, m));
-  return divide(add(prefaultDrop, multiply(share, faultCurrent)), z);
+function delivered({ drop, share, z }: Delivery, faultCurrent: Complex): Complex {
+  return divide(add(drop, multiply(share, faultCurrent)), z);
 }
 
 function subtractPhases(p: PhaseTriple, q: PhaseTriple): PhaseTriple {

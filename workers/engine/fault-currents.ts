@@ -3,6 +3,8 @@ import type { ComplexArray } from './complex.ts';
 import { largestFaults, faultPlace } from './fault-kernel.ts';
 import type { SequenceNetworks } from './sequence-networks.ts';
 import type { SolvedCase } from './solve-case.ts';
+import type { Arrays } from './work-arrays.ts';
+import { newArrays } from './work-arrays.ts';
 
 /*
  * The bolted faults of all buses and spots of a case in one pass over typed arrays: the largest phase current of each kind,
@@ -17,19 +19,22 @@ export type FaultArrays = {
   readonly lineLineGroundEarth: Float64Array;
 };
 
-export function faultArrays(count: number): FaultArrays {
+export function faultArrays(count: number, arrays: Arrays = newArrays): FaultArrays {
   return {
-    threePhase: new Float64Array(count),
-    lineGround: new Float64Array(count),
-    lineLine: new Float64Array(count),
-    lineLineGround: new Float64Array(count),
-    lineLineGroundEarth: new Float64Array(count),
+    threePhase: arrays.floats(count),
+    lineGround: arrays.floats(count),
+    lineLine: arrays.floats(count),
+    lineLineGround: arrays.floats(count),
+    lineLineGroundEarth: arrays.floats(count),
   };
 }
 
 /** Gives the fault currents at every bus; those that nothing feeds have none. */
-export function findBusFaults({ networks, openCircuit, topology }: SolvedCase): FaultArrays {
-  const faults = faultArrays(topology.busCount);
+export function findBusFaults(
+  { networks, openCircuit, topology }: SolvedCase,
+  arrays: Arrays = newArrays,
+): FaultArrays {
+  const faults = faultArrays(topology.busCount, arrays);
   if (openCircuit.balanced) passBalanced(networks, openCircuit.v1, faults);
   else passUnbalanced(networks, openCircuit, faults);
   return faults;

@@ -44,13 +44,15 @@ const nextPhase = [1, 2, 0] as const;
  * Example: Z1 = Z2 = Z0 = j1 and E = 1 give three-phase and line-to-ground currents of 1.
  */
 export function listBoltedFaults(point: FaultPoint, phases = point.phases): Fault[] {
-  const present = [0, 1, 2].filter((phase) => phases & (1 << phase));
-  const oneOfEach = point.balanced && phases === allPhases;
   const faults: Fault[] = [];
   if (phases === allPhases) faults.push(threePhaseFault(point));
-  for (const p of oneOfEach ? [0] : present) faults.push(lineGroundFault(point, p, zero));
-  const pairs = present.map((p) => [p, nextPhase[p]!] as const).filter(([, q]) => phases & (1 << q));
-  for (const [p, q] of oneOfEach ? pairs.slice(0, 1) : pairs) {
+  const choices = point.balanced && phases === allPhases ? 1 : 3;
+  for (let p = 0; p < choices; p++) {
+    if (phases & (1 << p)) faults.push(lineGroundFault(point, p, zero));
+  }
+  for (let p = 0; p < choices; p++) {
+    const q = nextPhase[p]!;
+    if (!(phases & (1 << p)) || !(phases & (1 << q))) continue;
     faults.push(lineLineFault(point, p, q), lineLineGroundFault(point, p, q));
   }
   return faults;
@@ -72,21 +74,14 @@ function threePhaseFault({ z1, z2, z0, voltage }: FaultPoint): Fault {
 export function lineGroundFault(point: FaultPoint, p: number, faultImpedance: Complex): Fault {
   if (!point.z0) return { kind: 'lineGround', currents: [zero, zero, zero], earth: zero };
   const current = divide(point.voltage[p]!, add(selfImpedance(point, point.z0), faultImpedance));
-  return { kind: 'lineGround', currents: placed([[p, current]]), earth: current };
+  return { kind: 'lineGround', currents: onPhases(p, current), earth: current };
 }
 
 /** I = (Vp − Vq)/(Z1 + Z2 + 2·(self − mutual)). */
-function lineLineFault(point: FaultPoint, p: number, q: number): Fault {
+export function lineLineFault(point: FaultPoint, p: number, q: number): Fault {
   const loop = sum(point.z1, point.z2, scale(subtract(point.self, point.mutual), 2));
   const current = divide(subtract(point.voltage[p]!, point.voltage[q]!), loop);
-  return {
-    kind: 'lineLine',
-    currents: placed([
-      [p, current],
-      [q, scale(current, -1)],
-    ]),
-    earth: zero,
-  };
+  return { kind: 'lineLine', currents: onPhases(p, current, q, scale(current, -1)), earth: zero };
 }
 
 /** Solves [Zpp Zpq; Zqp Zqq]·[Ip; Iq] = [Vp; Vq], q being the phase after p. */
@@ -102,22 +97,14 @@ function lineLineGroundFault(point: FaultPoint, p: number, q: number): Fault {
   const [vp, vq] = [voltage[p]!, voltage[q]!];
   const ip = divide(subtract(multiply(zpp, vp), multiply(zpq, vq)), determinant);
   const iq = divide(subtract(multiply(zpp, vq), multiply(zqp, vp)), determinant);
-  return {
-    kind: 'lineLineGround',
-    currents: placed([
-      [p, ip],
-      [q, iq],
-    ]),
-    earth: add(ip, iq),
-  };
+  return { kind: 'lineLineGround', currents: onPhases(p, ip, q, iq), earth: add(ip, iq) };
 }
 
 function selfImpedance(point: FaultPoint, z0: Complex): Complex {
   return add(scale(sum(z0, point.z1, point.z2), 1 / 3), point.self);
 }
 
-function placed(values: readonly (readonly [number, Complex])[]): PhaseTriple {
-  const currents: [Complex, Complex, Complex] = [zero, zero, zero];
-  for (const [phase, value] of values) currents[phase] = value;
-  return currents;
+function onPhases(p: number, ofP: Complex, q = -1, ofQ: Complex = zero): PhaseTriple {
+  const of = (phase: number) => (phase === p ? ofP : phase === q ? ofQ : zero);
+  return [of(0), of(1), of(2)];
 }

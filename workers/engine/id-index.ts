@@ -36,6 +36,11 @@ export class IdIndex {
     return this.numbers.get(id) ?? -1;
   }
 
+  /** Number of the element with this id, nothing where there is none. */
+  get(id: string): number | undefined {
+    return this.numbers.get(id);
+  }
+
   isOfProject(number: number): boolean {
     let index = number;
     for (const list of this.lists) {

@@ -1,8 +1,8 @@
 import type { CaseChoice, Model } from './case.ts';
-import { isClosed, isPresent } from './case.ts';
+import { isClosed } from './case.ts';
 import { DisjointSets } from './graph.ts';
-import type { Wiring } from './wiring.ts';
-import { companionFlag, ofProjectFlag } from './wiring.ts';
+import { companionFlag, ofProjectFlag, wiringOf } from './wiring.ts';
+import type { Arrays } from './work-arrays.ts';
 
 /* Nodes that closed switches make one, and the edges between such groups. */
 
@@ -15,33 +15,34 @@ export type JoinedNodes = {
 };
 
 /** Joins what closed switches join; between nodes of unlike phases a switch is an edge without length. */
-export function joinSwitchedNodes(model: Model, wiring: Wiring, choice: CaseChoice): JoinedNodes {
-  const groupOf = listPresentNodes(model, wiring, choice);
+export function joinSwitchedNodes(model: Model, choice: CaseChoice, arrays: Arrays): JoinedNodes {
+  const { nodePhases } = wiringOf(model);
+  const groupOf = listPresentNodes(model, choice, arrays);
   const links: [number, number][] = [];
   const closed = model.switches.filter(
     (link) => groupOf[link.from] !== -1 && groupOf[link.to] !== -1 && isClosed(choice, link),
   );
   if (closed.length > 0) {
-    const groups = new DisjointSets(model.nodes.length);
-    const isLike = ({ from, to }: { from: number; to: number }) =>
-      model.nodes[from]!.phases === model.nodes[to]!.phases;
+    const groups = new DisjointSets(groupOf.length);
+    const isLike = ({ from, to }: { from: number; to: number }) => nodePhases[from] === nodePhases[to];
     for (const link of closed) if (isLike(link)) groups.join(link.from, link.to);
     for (let node = 0; node < groupOf.length; node++) {
       if (groupOf[node] !== -1) groupOf[node] = groups.find(node);
     }
     for (const link of closed) if (!isLike(link)) links.push([groupOf[link.from]!, groupOf[link.to]!]);
   }
-  return { groupOf, ...listEdges(model, wiring, choice, groupOf, links) };
+  return { groupOf, ...listEdges(model, choice, groupOf, links, arrays) };
 }
 
-function listPresentNodes(model: Model, { nodeFlags }: Wiring, choice: CaseChoice): Int32Array {
-  const groupOf = new Int32Array(nodeFlags.length);
+/** By node: the node itself, -1 where it is absent. */
+export function listPresentNodes(model: Model, choice: CaseChoice, arrays: Arrays): Int32Array {
+  const { nodeFlags } = wiringOf(model);
+  const groupOf = arrays.integers(nodeFlags.length);
   const absent = absentFlags(choice);
   for (let node = 0; node < groupOf.length; node++) groupOf[node] = nodeFlags[node]! & absent ? -1 : node;
-  if (choice.out) {
-    for (let node = 0; node < groupOf.length; node++) {
-      if (choice.out.has(model.nodes[node]!.id)) groupOf[node] = -1;
-    }
+  for (const id of choice.out ?? []) {
+    const node = model.nodeIndex.get(id);
+    if (node !== undefined) groupOf[node] = -1;
   }
   return groupOf;
 }
@@ -50,16 +51,18 @@ function absentFlags(choice: CaseChoice): number {
   return (choice.project ? 0 : ofProjectFlag) | (choice.companions ? 0 : companionFlag);
 }
 
-function listEdges(
+/** The branches that are in service with both ends, then `links`, by the groups of their ends; -1 where there is no edge. */
+export function listEdges(
   model: Model,
-  wiring: Wiring,
   choice: CaseChoice,
   groupOf: Int32Array,
   links: readonly [number, number][],
+  arrays: Arrays,
 ) {
+  const wiring = wiringOf(model);
   const branchCount = wiring.from.length;
-  const from = new Int32Array(branchCount + links.length);
-  const to = new Int32Array(branchCount + links.length);
+  const from = arrays.integers(branchCount + links.length);
+  const to = arrays.integers(branchCount + links.length);
   const absent = absentFlags(choice);
   for (let edge = 0; edge < branchCount; edge++) {
     const u = groupOf[wiring.from[edge]!]!;
@@ -74,10 +77,9 @@ function listEdges(
   });
   const takeOut = (edge: number) => (from[edge] = to[edge] = -1);
   for (const { branch } of choice.opened ?? []) takeOut(branch);
-  if (choice.out) {
-    for (let edge = 0; edge < branchCount; edge++) {
-      if (!isPresent(choice, model.branches[edge]!)) takeOut(edge);
-    }
+  for (const id of choice.out ?? []) {
+    const branch = model.branchIndex.get(id);
+    if (branch !== undefined) takeOut(branch);
   }
   return { from, to };
 }

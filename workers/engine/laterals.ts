@@ -76,7 +76,7 @@ export function sweepVoltagesFromTaps(
   const voltage = phaseArrays(laterals.tap.length);
   for (let spot = 0; spot < laterals.tap.length; spot++) {
     const parent = laterals.parent[spot]!;
-    const branch = model.branches[laterals.branch[spot]!];
+    const branch = laterals.branch[spot]!;
     for (let phase = 0; phase < 3; phase++) {
       const { re, im } = voltage[phase]!;
       if (parent === -1) takePhaseOfTap(spot, phase, laterals.tap[spot]!);
@@ -84,7 +84,7 @@ export function sweepVoltagesFromTaps(
         re[spot] = re[parent]!;
         im[spot] = im[parent]!;
       }
-      if (branch) addRise(spot, phase, branch);
+      if (branch !== -1) addRise(spot, phase, branch);
     }
   }
   return voltage;
@@ -101,13 +101,15 @@ export function sweepVoltagesFromTaps(
       v0.im[bus]! + turn1.re * im1 + turn1.im * re1 + turn2.re * im2 + turn2.im * re2;
   }
 
-  function addRise(spot: number, phase: number, { self, mutual }: Model['branches'][number]): void {
+  function addRise(spot: number, phase: number, branch: number): void {
+    const { selfRe, selfIm, mutualRe, mutualIm } = wiringOf(model);
     for (let other = 0; other < 3; other++) {
-      const z = other === phase ? self : mutual;
+      const zRe = (other === phase ? selfRe : mutualRe)[branch]!;
+      const zIm = (other === phase ? selfIm : mutualIm)[branch]!;
       const iRe = flow[other]!.re[spot]!;
       const iIm = flow[other]!.im[spot]!;
-      voltage[phase]!.re[spot]! += z.re * iRe - z.im * iIm;
-      voltage[phase]!.im[spot]! += z.re * iIm + z.im * iRe;
+      voltage[phase]!.re[spot]! += zRe * iRe - zIm * iIm;
+      voltage[phase]!.im[spot]! += zRe * iIm + zIm * iRe;
     }
   }
 }

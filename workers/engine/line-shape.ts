@@ -1,11 +1,11 @@
 import type { Cable, Line, Place } from '../../shared/schemas/study.ts';
 import { conductorSizes, outsideDiameterM, tapeSizes } from './line-units.ts';
+import { wholeNumber } from './shape-electrical.ts';
 import type { Check, Fields } from './shape.ts';
 import {
   between,
   check,
   checkByNotes,
-  expect,
   listOf,
   name,
   noteProblem,
@@ -19,11 +19,6 @@ import {
 
 /** More than any pole carries; it bounds the work that a spoilt file can ask for. */
 const mostPlaces = 24;
-
-const wholeNumber = expect(
-  'a whole number of 1 or more',
-  (value) => Number.isInteger(value) && Number(value) > 0,
-);
 
 /** Sizes in metric or in US units; the US check speaks where any of its fields is there. */
 function inEitherUnits(metric: Check, us: Check, ...usKeys: readonly string[]): Check {

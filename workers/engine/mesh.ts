@@ -59,18 +59,29 @@ export function traceMesh(
     structure: analyseStructure(graph, orderByMinimumDegree(graph)),
     partOf,
     zeroPartOf: wiring.allGoThrough ? partOf : findZeroParts(count, us, vs, branches, wiring),
-    positive: addUpAdmittances(graph, branches, wiring.z1Re, wiring.z1Im),
-    zero: addUpAdmittances(graph, branches, wiring.z0Re, wiring.z0Im),
+    ...admittancesOf(graph, branches, wiring),
   };
 }
 
 /** Gives the same mesh with the impedances of another model. */
 export function withOtherImpedances(mesh: Mesh, wiring: Wiring): Mesh {
   const { graph, branches } = mesh;
+  return { ...mesh, ...admittancesOf(graph, branches, wiring) };
+}
+
+function admittancesOf(
+  graph: Graph,
+  branches: ArrayLike<number>,
+  { z1Re, z1Im, z0Re, z0Im }: Wiring,
+): Pick<Mesh, 'positive' | 'zero'> {
+  const ofEdges = (values: Float64Array) => {
+    const gathered = new Float64Array(branches.length);
+    for (let edge = 0; edge < gathered.length; edge++) gathered[edge] = values[branches[edge]!]!;
+    return gathered;
+  };
   return {
-    ...mesh,
-    positive: addUpAdmittances(graph, branches, wiring.z1Re, wiring.z1Im),
-    zero: addUpAdmittances(graph, branches, wiring.z0Re, wiring.z0Im),
+    positive: addUpAdmittances(graph, ofEdges(z1Re), ofEdges(z1Im)),
+    zero: addUpAdmittances(graph, ofEdges(z0Re), ofEdges(z0Im)),
   };
 }
 
@@ -93,24 +104,19 @@ function findZeroParts(
   return findParts(count, us.filter(goesThrough), vs.filter(goesThrough));
 }
 
-/** A branch without impedance is one that the sequence does not pass: its entries stay zero. */
-function addUpAdmittances(
-  graph: Graph,
-  branches: ArrayLike<number>,
-  zRe: Float64Array,
-  zIm: Float64Array,
-): MeshAdmittances {
+/** Takes impedances by edge. One of zero is of a branch that the sequence does not pass: its entries stay zero. */
+export function addUpAdmittances(graph: Graph, zRe: Float64Array, zIm: Float64Array): MeshAdmittances {
   const count = graph.start.length - 1;
   const diagonal = complexArray(count);
   const offDiagonal = complexArray(graph.neighbour.length);
   const scale = new Float64Array(count);
   for (let bus = 0; bus < count; bus++) {
     for (let p = graph.start[bus]!; p < graph.start[bus + 1]!; p++) {
-      const branch = branches[graph.edge[p]!]!;
-      const square = zRe[branch]! * zRe[branch]! + zIm[branch]! * zIm[branch]!;
+      const edge = graph.edge[p]!;
+      const square = zRe[edge]! * zRe[edge]! + zIm[edge]! * zIm[edge]!;
       if (square === 0) continue;
-      const yRe = zRe[branch]! / square;
-      const yIm = -zIm[branch]! / square;
+      const yRe = zRe[edge]! / square;
+      const yIm = -zIm[edge]! / square;
       diagonal.re[bus]! += yRe;
       diagonal.im[bus]! += yIm;
       offDiagonal.re[p] = -yRe;

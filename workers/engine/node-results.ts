@@ -12,18 +12,21 @@ import type { FaultArrays } from './fault-currents.ts';
 import { findBusFaults, findSpotFaults } from './fault-currents.ts';
 import type { FaultPoint } from './faults.ts';
 import { largestPhase, lineGroundFault, listBoltedFaults } from './faults.ts';
+import { nodeAt } from './model-parts.ts';
 import { baseAmps, baseOhms } from './per-unit.ts';
 import type { SequenceNetwork } from './sequence-networks.ts';
 import type { SolvedCase } from './solve-case.ts';
 import { findFaultPoint } from './solve-case.ts';
 import type { StateName } from './states.ts';
+import type { Arrays } from './work-arrays.ts';
+import { withWorkArrays } from './work-arrays.ts';
 
 /* What a study reports of a node, in ohms and amperes. */
 
 /** Gives impedances and the largest current of each fault at a node. */
 export function reportNode(solved: SolvedCase, node: number): NodeState {
-  const { baseMva, nodes } = solved.model;
-  const { kv, phases } = nodes[node]!;
+  const { baseMva } = solved.model;
+  const { kv, phases } = nodeAt(solved.model, node);
   const point = findFaultPoint(solved, node);
   const currents = largestCurrents(point, phases, baseAmps(baseMva, kv));
   if (phases !== allPhases) return currents;
@@ -61,7 +64,17 @@ function isOnePhase(phases: number): boolean {
  * `faultOhm` is the resistance of the line-to-ground fault of state `minimum`.
  */
 export function reportNodes(
-  nodes: readonly { id: string; kv: number; phases: number; ofProject: boolean }[],
+  nodes: readonly { id: string; kv: number; ofProject?: boolean }[],
+  caseOf: (state: StateName, kv: number) => SolvedCase,
+  withProject: boolean,
+  faultOhm: number,
+): Record<string, NodeResult> {
+  return withWorkArrays((arrays) => reportWith(arrays, nodes, caseOf, withProject, faultOhm));
+}
+
+function reportWith(
+  arrays: Arrays,
+  nodes: readonly { id: string; kv: number; ofProject?: boolean }[],
   caseOf: (state: StateName, kv: number) => SolvedCase,
   withProject: boolean,
   faultOhm: number,
@@ -71,7 +84,7 @@ export function reportNodes(
   const faultsOf = (solved: SolvedCase): CaseFaults => {
     let faults = known.get(solved);
     if (!faults) {
-      faults = { atBus: findBusFaults(solved), atSpot: findSpotFaults(solved) };
+      faults = { atBus: findBusFaults(solved, arrays), atSpot: findSpotFaults(solved) };
       known.set(solved, faults);
     }
     return faults;

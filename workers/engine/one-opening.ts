@@ -3,11 +3,16 @@ import { isPresent } from './case.ts';
 import type { Complex, ComplexArray } from './complex.ts';
 import { add, at, divide, magnitude, multiply, scale, subtract } from './complex.ts';
 import type { FaultPoint } from './faults.ts';
+import { findBridges } from './mesh-bridges.ts';
+import { branchAt } from './model-parts.ts';
 import { drivingPoint, listFeeds, transferOfPair } from './sequence-networks.ts';
 import type { SequenceNetwork } from './sequence-networks.ts';
 import type { SolvedCase } from './solve-case.ts';
-import { busOfNode, findFaultPoint, solveCase } from './solve-case.ts';
+import { busOfNode, findFaultPoint, withCase } from './solve-case.ts';
 import { transfersFrom } from './transfers.ts';
+import { wiringOf } from './wiring.ts';
+import type { Arrays } from './work-arrays.ts';
+import { newArrays } from './work-arrays.ts';
 
 /*
  * One place, with each of many branches opened alone. Opening a branch of impedance z between u and v is a change of rank
@@ -27,6 +32,7 @@ type Changed = Complex | null | 'anew';
 export function openingsSeenFrom(
   solved: SolvedCase,
   node: number,
+  arrays: Arrays = newArrays,
 ): (opening: Opening) => FaultPoint | undefined {
   const { networks } = solved;
   const before = findFaultPoint(solved, node);
@@ -34,13 +40,14 @@ export function openingsSeenFrom(
   if (!before || !solved.openCircuit.balanced || solved.choice.inverters !== 'none') {
     return (opening) => openAnew(solved, node, opening);
   }
-  const columns = transfersFrom(solved, node);
-  const open1 = openInSequence(solved, networks.positive, 'z1', bus, columns.z1);
-  const open2 = openInSequence(solved, networks.negative, 'z2', bus, columns.z2);
-  const open0 = openInSequence(solved, networks.zero, 'z0', bus, columns.z0);
+  const columns = transfersFrom(solved, node, arrays);
+  const open1 = openInSequence(solved, networks.positive, 'z1', bus, columns.z1, arrays);
+  const alike = networks.negative === networks.positive;
+  const open2 = alike ? undefined : openInSequence(solved, networks.negative, 'z2', bus, columns.z2, arrays);
+  const open0 = openInSequence(solved, networks.zero, 'z0', bus, columns.z0, arrays);
   return (opening) => {
     const z1 = open1(opening);
-    const z2 = open2(opening);
+    const z2 = open2 ? open2(opening) : z1;
     const z0 = open0(opening);
     if (z1 === 'anew' || z2 === 'anew' || z0 === 'anew') return openAnew(solved, node, opening);
     return z1 && z2 ? { ...before, z1, z2, z0 } : undefined;
@@ -49,7 +56,7 @@ export function openingsSeenFrom(
 
 function openAnew({ model, choice }: SolvedCase, node: number, opening: Opening): FaultPoint | undefined {
   const opened = [...(choice.opened ?? []), opening];
-  return findFaultPoint(solveCase(model, { ...choice, opened }), node);
+  return withCase(model, { ...choice, opened }, (solved) => findFaultPoint(solved, node));
 }
 
 function openInSequence(
@@ -58,14 +65,15 @@ function openInSequence(
   sequence: 'z1' | 'z2' | 'z0',
   place: number,
   column: ComplexArray,
+  arrays: Arrays,
 ): (opening: Opening) => Changed {
   const { model, topology } = solved;
-  const feeds = countFeeds(solved, network, sequence);
-  const rootOfPlace = feeds.rootOf(place);
+  const feeds = countFeeds(solved, network, sequence, place, arrays);
+  const rootOfPlace = feeds.rootOf[place];
   const unchanged = network.hasPath[place] ? drivingPoint(network, place) : null;
 
   return ({ branch: index, end }) => {
-    const branch = model.branches[index]!;
+    const branch = branchAt(model, index);
     const u = topology.busOf[branch.from]!;
     const v = topology.busOf[branch.to]!;
     // A lateral opens beyond the core, and what is absent or open already has nothing to open.
@@ -79,15 +87,12 @@ function openInSequence(
   };
 
   function openSeries(u: number, v: number, z: Complex): Changed {
-    if (!unchanged || u === v || feeds.rootOf(u) !== rootOfPlace) return unchanged;
-    const { parent, meshCount } = network.trees;
-    const child = Math.max(u, v);
-    if (child >= meshCount && parent[child] === Math.min(u, v)) {
-      const beyond = isBehind(parent, place, child);
-      const feedsBehind = feeds.behind[child]!;
-      const feedsBefore = feeds.ofPart(child) - feedsBehind;
-      if ((beyond ? feedsBehind : feedsBefore) === 0) return null;
-      if ((beyond ? feedsBefore : feedsBehind) === 0) return unchanged;
+    if (!unchanged || u === v || feeds.rootOf[u] !== rootOfPlace) return unchanged;
+    const sides = feeds.findSides(u, v);
+    if (sides) {
+      const { behind, before, placeIsBehind } = sides;
+      if ((placeIsBehind ? behind : before) === 0) return null;
+      if ((placeIsBehind ? before : behind) === 0) return unchanged;
     }
     const loop = subtract(
       add(drivingPoint(network, u), drivingPoint(network, v)),
@@ -98,7 +103,7 @@ function openInSequence(
 
   /** With a shunt z at u gone: Z'_pp = Z_pp + Z_pu²/(z − Z_uu). */
   function loseShunt(u: number, z: Complex): Changed {
-    if (!unchanged || feeds.rootOf(u) !== rootOfPlace) return unchanged;
+    if (!unchanged || feeds.rootOf[u] !== rootOfPlace) return unchanged;
     if (feeds.ofPart(u) === 1) return null;
     return changed(at(column, u), z, drivingPoint(network, u));
   }
@@ -110,32 +115,75 @@ function openInSequence(
   }
 }
 
-function isBehind(parent: Int32Array, bus: number, child: number): boolean {
-  let at = bus;
-  while (at > child) at = parent[at]!;
-  return at === child;
-}
+/** What feeds a sequence on the two sides of a branch that nothing else joins. */
+type Sides = { behind: number; before: number; placeIsBehind: boolean };
 
-/** Counts what feeds a sequence: behind each bus of a tree, and in each part as a whole. */
-function countFeeds(solved: SolvedCase, { trees }: SequenceNetwork, sequence: 'z1' | 'z2' | 'z0') {
+/**
+ * Counts what feeds a sequence: behind each bus of a tree and each bridge of the mesh, and in each part as a whole. Walks to
+ * the root and from `place` are walked once for all openings, since a feeder can be one long chain.
+ */
+function countFeeds(
+  solved: SolvedCase,
+  { trees }: SequenceNetwork,
+  sequence: 'z1' | 'z2' | 'z0',
+  place: number,
+  arrays: Arrays,
+) {
   const { parent, meshCount } = trees;
   const { mesh } = solved.topology;
-  const behind = new Int32Array(parent.length);
+  const behind = arrays.integers(parent.length);
   for (const { bus } of listFeeds(solved.model, solved.choice, solved.topology, sequence)) behind[bus]!++;
   for (let bus = parent.length - 1; bus >= meshCount; bus--) {
     if (parent[bus] !== -1) behind[parent[bus]!]! += behind[bus]!;
   }
+  /** By bus: what it shares with all of its part: a bus of the mesh, or that from which its tree hangs alone. */
+  const rootOf = arrays.integers(parent.length);
   const partOf = sequence === 'z0' ? mesh.zeroPartOf : mesh.partOf;
   const ofMeshPart = new Int32Array(meshCount);
-  for (let bus = 0; bus < meshCount; bus++) ofMeshPart[partOf[bus]!]! += behind[bus]!;
-  const rootOf = (bus: number) => {
-    let root = bus;
-    while (root >= meshCount && parent[root] !== -1) root = parent[root]!;
-    return root < meshCount ? partOf[root]! : root;
-  };
+  for (let bus = 0; bus < meshCount; bus++) {
+    rootOf[bus] = partOf[bus]!;
+    ofMeshPart[partOf[bus]!]! += behind[bus]!;
+  }
+  for (let bus = meshCount; bus < parent.length; bus++) {
+    rootOf[bus] = parent[bus] === -1 ? bus : rootOf[parent[bus]!]!;
+  }
   const ofPart = (bus: number) => {
-    const root = rootOf(bus);
+    const root = rootOf[bus]!;
     return root < meshCount ? ofMeshPart[root]! : behind[root]!;
   };
-  return { behind, rootOf, ofPart };
+
+  const isOnWay = arrays.bytes(parent.length);
+  let outermost = place;
+  for (; outermost >= meshCount && parent[outermost] !== -1; outermost = parent[outermost]!) {
+    isOnWay[outermost] = 1;
+  }
+  const { zeroGoesThrough } = wiringOf(solved.model);
+  const passes = (edge: number) => sequence !== 'z0' || zeroGoesThrough[mesh.branches[edge]!] === 1;
+  const bridges = findBridges(mesh.graph, passes);
+  /** By place in the walk over the mesh: what feeds all places before it. */
+  const upTo = new Int32Array(meshCount + 1);
+  for (let bus = 0; bus < meshCount; bus++) upTo[bridges.place[bus]! + 1] = behind[bus]!;
+  for (let at = 0; at < meshCount; at++) upTo[at + 1]! += upTo[at]!;
+
+  /** Tells the sides of a branch of the network; nothing where its ends are joined another way too. */
+  function findSides(u: number, v: number): Sides | undefined {
+    const outer = Math.max(u, v);
+    const inner = Math.min(u, v);
+    if (outer < meshCount) {
+      if (bridges.bridgeFrom[u] === v) return sidesOfBridge(u);
+      return bridges.bridgeFrom[v] === u ? sidesOfBridge(v) : undefined;
+    }
+    if (parent[outer] !== inner) return undefined;
+    const fed = behind[outer]!;
+    return { behind: fed, before: ofPart(outer) - fed, placeIsBehind: isOnWay[outer] === 1 };
+  }
+
+  function sidesOfBridge(child: number): Sides {
+    const [first, end] = [bridges.place[child]!, bridges.end[child]!];
+    const fed = upTo[end]! - upTo[first]!;
+    const at = bridges.place[outermost]!;
+    return { behind: fed, before: ofPart(child) - fed, placeIsBehind: at >= first && at < end };
+  }
+
+  return { rootOf, ofPart, findSides };
 }

@@ -1,12 +1,14 @@
 import type { CaseChoice, CurrentSource, Model, PhaseTriple } from './case.ts';
 import { allPhases, isMember, isPresent, phaseA, phaseB, phaseC } from './case.ts';
 import type { Complex, ComplexArray } from './complex.ts';
-import { a, a2, addAt, complexArray, multiply, polar, scale, sum } from './complex.ts';
+import { a, a2, addAt, multiply, polar, scale } from './complex.ts';
 import type { PhaseArrays } from './laterals.ts';
 import { addPhasesAt, phaseArrays, sweepCurrentsToTaps, sweepVoltagesFromTaps } from './laterals.ts';
 import type { SequenceNetworks } from './sequence-networks.ts';
 import { solveVoltages } from './sequence-networks.ts';
 import type { Topology } from './topology.ts';
+import type { Arrays } from './work-arrays.ts';
+import { newArrays } from './work-arrays.ts';
 
 /*
  * Voltages before the fault, from superposition: Vo(s) = E·[s = 1] + Z(s)·I(s) for the currents I of all inverters.
@@ -31,18 +33,26 @@ export type OpenCircuit = {
 /** Va, Vb, Vc of sequence values: Va = V0 + V1 + V2, Vb = V0 + a²·V1 + a·V2, Vc = V0 + a·V1 + a²·V2. */
 export function phasesOf(v1: Complex, v2: Complex, v0: Complex): PhaseTriple {
   return [
-    sum(v0, v1, v2),
-    sum(v0, multiply(a2, v1), multiply(a, v2)),
-    sum(v0, multiply(a, v1), multiply(a2, v2)),
+    { re: v0.re + v1.re + v2.re, im: v0.im + v1.im + v2.im },
+    addTurned(v0, a2, v1, a, v2),
+    addTurned(v0, a, v1, a2, v2),
   ];
+}
+
+/** p + turnQ·q + turnR·r, with a single object made, since devices ask for many. */
+function addTurned(p: Complex, turnQ: Complex, q: Complex, turnR: Complex, r: Complex): Complex {
+  return {
+    re: p.re + (turnQ.re * q.re - turnQ.im * q.im) + (turnR.re * r.re - turnR.im * r.im),
+    im: p.im + (turnQ.re * q.im + turnQ.im * q.re) + (turnR.re * r.im + turnR.im * r.re),
+  };
 }
 
 /** The inverse of `phasesOf`: I1 = (Ia + a·Ib + a²·Ic)/3 and so on. */
 export function sequencesOf([ia, ib, ic]: PhaseTriple): { i1: Complex; i2: Complex; i0: Complex } {
   return {
-    i1: scale(sum(ia, multiply(a, ib), multiply(a2, ic)), 1 / 3),
-    i2: scale(sum(ia, multiply(a2, ib), multiply(a, ic)), 1 / 3),
-    i0: scale(sum(ia, ib, ic), 1 / 3),
+    i1: scale(addTurned(ia, a, ib, a2, ic), 1 / 3),
+    i2: scale(addTurned(ia, a2, ib, a, ic), 1 / 3),
+    i0: { re: (ia.re + ib.re + ic.re) * (1 / 3), im: (ia.im + ib.im + ic.im) * (1 / 3) },
   };
 }
 
@@ -62,14 +72,19 @@ export function solveOpenCircuit(
   choice: CaseChoice,
   topology: Topology,
   networks: SequenceNetworks,
+  arrays: Arrays = newArrays,
 ): OpenCircuit {
   const { busCount, laterals } = topology;
   const { taking, stranded } = chooseInverters(model, choice, topology, networks);
   const balanced = taking.every(({ phases }) => phases === allPhases);
-  const v1 = complexArray(busCount);
-  const v2 = complexArray(busCount);
-  // Where both are zero everywhere, one array serves for both.
-  const v0 = balanced ? v2 : complexArray(busCount);
+  // Where a voltage is zero everywhere, one array of zeros serves for all.
+  const nothing = () => ({ re: arrays.zeros(busCount), im: arrays.zeros(busCount) });
+  const v1 = {
+    re: arrays.floats(busCount),
+    im: taking.length > 0 ? arrays.floats(busCount) : arrays.zeros(busCount),
+  };
+  const v2 = balanced ? nothing() : arrays.complex(busCount);
+  const v0 = balanced ? v2 : arrays.complex(busCount);
   const spotFlow = phaseArrays(laterals.tap.length);
   if (taking.length > 0) {
     injectCurrents();

@@ -1,157 +1,148 @@
-import type {
-  ElementLists,
-  Line,
-  Machine,
-  Project,
-  SourceStrength,
-  Study,
-} from '../../shared/schemas/study.ts';
+import type { Machine, SourceStrength, Study } from '../../shared/schemas/study.ts';
 import type { Branch, CurrentSource, Model, ModelNode, ModelSource, ModelSwitch, Shunt } from './case.ts';
 import { allPhases } from './case.ts';
+import type { JoinedStudy } from './check-references.ts';
+import { joinedStudyOf } from './check-references.ts';
 import type { Complex } from './complex.ts';
-import { add, scale, subtract, zero } from './complex.ts';
+import { add, scale, zero } from './complex.ts';
+import type { ElementList, ElementOf } from './element-list.ts';
 import { inverterCurrents } from './inverter-currents.ts';
-import type { LineImpedances } from './line-impedances.ts';
-import { lineImpedances } from './line-impedances.ts';
+import { layOutWiring } from './lay-out-wiring.ts';
+import { makePartsBy } from './model-parts.ts';
 import { baseOhms, earthing, perUnit, phaseSet } from './per-unit.ts';
-import type { ElementKind, Placed } from './study-elements.ts';
+import type { ElementKind } from './study-elements.ts';
 import { transformerBranch } from './transformer-branch.ts';
+import type { Wiring } from './wiring.ts';
+import { rememberWiring } from './wiring.ts';
 
 /** Turns a checked study into the model that every case is solved on. */
 export function prepareModel(study: Study): Model {
   const { baseMva } = study;
-  const nodes = mapElements(study, 'nodes', ({ id, kv, phases }, ofProject, companion): ModelNode => {
-    return { id, ofProject, companion, kv, phases: phaseSet(phases) };
-  });
-  const nodeIndex = indexById(nodes);
-  // Files mostly list what joins nodes in the order of the nodes; each look-up saved is several trips to memory.
-  let last = 0;
-  const indexOf = (id: string): number => {
-    if (nodes[last]!.id === id) return last;
-    if (nodes[last + 1]?.id === id) return ++last;
-    const index = nodeIndex.get(id)!;
-    if (index > last) last = index;
-    return index;
+  const joined = joinedStudyOf(study);
+  const { nodes, lines, nodeIds, branchIds } = joined;
+  const kvOf = (node: number) => nodes.elements[node]!.kv;
+  const ohmsOf = (node: number) => baseOhms(baseMva, kvOf(node));
+  const transformers = prepareTransformers(joined, baseMva, kvOf);
+  const wiring = layOutWiring(study, joined, transformers);
+  const lineCount = lines.list.elements.length;
+
+  const nodeAt = (index: number): ModelNode => {
+    const { id, kv, phases, with: generator } = nodes.elements[index]!;
+    const ofProject = nodes.isOfProject(index);
+    return { id, ofProject, companion: generator !== undefined, kv, phases: phaseSet(phases) };
   };
-  const ohmsOf = (node: number) => baseOhms(baseMva, nodes[node]!.kv);
-  const impedancesOf = lineImpedances(study);
+  const lineBranches = new Array<Branch | undefined>(lineCount);
+  const branchAt = (index: number): Branch =>
+    index < lineCount
+      ? (lineBranches[index] ??= lineBranch(lines.list, wiring, index))
+      : transformers[index - lineCount]!;
+  let allNodes: ModelNode[] | undefined;
+  let allBranches: Branch[] | undefined;
 
-  const branches = mapElements(study, 'lines', (line, ofProject, companion): Branch => {
-    const from = indexOf(line.from);
-    return lineBranch(line, from, indexOf(line.to), impedancesOf(line), ohmsOf(from), ofProject, companion);
-  });
-  const transformers = mapElements(study, 'transformers', (transformer, ofProject, companion): Branch => {
-    const from = indexOf(transformer.from);
-    const to = indexOf(transformer.to);
-    const electrical = transformerBranch(transformer, baseMva, nodes[from]!.kv, nodes[to]!.kv);
-    return { id: transformer.id, ofProject, companion, from, to, ...electrical };
-  });
-  for (const transformer of transformers) branches.push(transformer);
-
-  return {
+  const model: Model = {
     baseMva,
-    nodes,
-    nodeIndex,
-    branches,
-    branchIndex: indexById(branches),
-    switches: mapElements(
-      study,
-      'switches',
-      ({ id, from, to, closed }, ofProject, companion): ModelSwitch => {
-        return { id, ofProject, companion, from: indexOf(from), to: indexOf(to), closed };
+    get nodes() {
+      return (allNodes ??= nodes.elements.map((_, index) => nodeAt(index)));
+    },
+    nodeIndex: nodeIds,
+    get branches() {
+      return (allBranches ??= Array.from(wiring.from, (_, index) => branchAt(index)));
+    },
+    branchIndex: branchIds,
+    switches: prepareEach(
+      joined.switches.list,
+      ({ id, closed }, index, ofProject, companion): ModelSwitch => {
+        const { from, to } = joined.switches;
+        return { id, ofProject, companion, from: from[index]!, to: to[index]!, closed };
       },
     ),
-    sources: mapElements(
-      study,
-      'sources',
-      ({ id, node: at, max, min }, ofProject, companion): ModelSource => {
-        const node = indexOf(at);
+    sources: prepareEach(
+      joined.sources.list,
+      ({ id, max, min }, index, ofProject, companion): ModelSource => {
+        const node = joined.sources.node[index]!;
         const shunt = (strength: SourceStrength): Shunt => {
           return { id, ofProject, companion, node, ...sourceImpedances(strength, ohmsOf(node)) };
         };
         return { max: shunt(max), min: shunt(min ?? max) };
       },
     ),
-    machines: mapElements(study, 'machines', (machine, ofProject, companion): Shunt => {
-      const node = indexOf(machine.node);
+    machines: prepareEach(joined.machines.list, (machine, index, ofProject, companion): Shunt => {
+      const node = joined.machines.node[index]!;
       const { z1, z2, z0 } = machineImpedances(machine, baseMva, ohmsOf(node));
       return { id: machine.id, ofProject, companion, node, z1, z2, z0 };
     }),
-    groundingBanks: mapElements(
-      study,
-      'groundingBanks',
-      ({ id, node: at, z0 }, ofProject, companion): Shunt => {
-        const node = indexOf(at);
+    groundingBanks: prepareEach(
+      joined.groundingBanks.list,
+      ({ id, z0 }, index, ofProject, companion): Shunt => {
+        const node = joined.groundingBanks.node[index]!;
         return { id, ofProject, companion, node, z1: null, z2: null, z0: perUnit(z0, ohmsOf(node)) };
       },
     ),
-    inverters: mapElements(study, 'inverters', (inverter, ofProject, companion): CurrentSource => {
+    inverters: prepareEach(joined.inverters.list, (inverter, index, ofProject, companion): CurrentSource => {
+      const node = joined.inverters.node[index]!;
       const phases = phaseSet(inverter.phases);
       const currents = inverterCurrents(inverter, baseMva);
-      return { id: inverter.id, ofProject, companion, node: indexOf(inverter.node), phases, currents };
+      return { id: inverter.id, ofProject, companion, node, phases, currents };
     }),
   };
+  rememberWiring(model, wiring);
+  makePartsBy(model, { nodeAt, branchAt });
+  return model;
 }
 
-type SequenceImpedances = Pick<Shunt, 'z1' | 'z2' | 'z0'>;
-
-/** Goes through all elements of a kind, the feeder's before the project's. */
-function mapElements<K extends ElementKind, R>(
-  study: Study,
-  kind: K,
-  make: (element: Placed<K>['element'], ofProject: boolean, companion: boolean) => R,
+/**
+ * Goes through the elements of a list. Each is written out field by field: put together from parts it would take ten times
+ * as long to make.
+ */
+function prepareEach<K extends ElementKind, R>(
+  list: ElementList<K>,
+  prepare: (element: ElementOf<K>, index: number, ofProject: boolean, companion: boolean) => R,
 ): R[] {
-  const made: R[] = [];
-  for (const part of ['feeder', 'project'] as const) {
-    const lists: Pick<Project, 'nodes' | keyof ElementLists> | undefined = study[part];
-    for (const element of (lists?.[kind] ?? []) as Placed<K>['element'][]) {
-      made.push(make(element, part === 'project', 'with' in element && element.with !== undefined));
-    }
-  }
-  return made;
+  return list.elements.map((element, index) => {
+    const { with: generator } = element as { with?: string };
+    return prepare(element, index, list.isOfProject(index), generator !== undefined);
+  });
 }
 
-function indexById(elements: readonly { id: string }[]): Map<string, number> {
-  const index = new Map<string, number>();
-  for (let at = 0; at < elements.length; at++) index.set(elements[at]!.id, at);
-  return index;
+function prepareTransformers(
+  { transformers }: JoinedStudy,
+  baseMva: number,
+  kvOf: (node: number) => number,
+): Branch[] {
+  return prepareEach(transformers.list, (transformer, index, ofProject, companion): Branch => {
+    const from = transformers.from[index]!;
+    const to = transformers.to[index]!;
+    const electrical = transformerBranch(transformer, baseMva, kvOf(from), kvOf(to));
+    return { id: transformer.id, ofProject, companion, from, to, ...electrical };
+  });
 }
 
-function lineBranch(
-  line: Line,
-  from: number,
-  to: number,
-  perKm: LineImpedances,
-  ohms: number,
-  ofProject: boolean,
-  companion: boolean,
-): Branch {
-  const perOhm = line.km / ohms;
-  const z1 = { re: perKm.z1.r * perOhm, im: perKm.z1.x * perOhm };
-  const z0 = { re: perKm.z0.r * perOhm, im: perKm.z0.x * perOhm };
-  const phases = phaseSet(line.phases);
+function lineBranch(list: ElementList<'lines'>, wiring: Wiring, index: number): Branch {
+  const { id, phases: letters, with: generator } = list.elements[index]!;
+  const { z1Re, z1Im, z0Re, z0Im, selfRe, selfIm, mutualRe, mutualIm } = wiring;
+  const phases = phaseSet(letters);
   const isLateral = phases !== allPhases;
   return {
-    id: line.id,
-    ofProject,
-    companion,
-    from,
-    to,
+    id,
+    ofProject: list.isOfProject(index),
+    companion: generator !== undefined,
+    from: wiring.from[index]!,
+    to: wiring.to[index]!,
     phases,
-    z1,
-    zeroSequence: { kind: 'series', z: z0 },
-    self: isLateral ? scale(add(z0, scale(z1, 2)), 1 / 3) : zero,
-    mutual: isLateral ? scale(subtract(z0, z1), 1 / 3) : zero,
+    z1: { re: z1Re[index]!, im: z1Im[index]! },
+    zeroSequence: { kind: 'series', z: { re: z0Re[index]!, im: z0Im[index]! } },
+    self: isLateral ? { re: selfRe[index]!, im: selfIm[index]! } : zero,
+    mutual: isLateral ? { re: mutualRe[index]!, im: mutualIm[index]! } : zero,
     clockHour: 0,
   };
 }
 
-function sourceImpedances({ z1, z2, z0 }: SourceStrength, ohms: number): SequenceImpedances {
+function sourceImpedances({ z1, z2, z0 }: SourceStrength, ohms: number): Pick<Shunt, 'z1' | 'z2' | 'z0'> {
   return { z1: perUnit(z1, ohms), z2: perUnit(z2 ?? z1, ohms), z0: z0 ? perUnit(z0, ohms) : null };
 }
 
 /** r + jXd'', r + jX2 and, where the neutral is grounded, r + jX0 + 3·Zn; the first three are on the machine's own kVA. */
-function machineImpedances(machine: Machine, baseMva: number, ohms: number): SequenceImpedances {
+function machineImpedances(machine: Machine, baseMva: number, ohms: number): Pick<Shunt, 'z1' | 'z2' | 'z0'> {
   const onBase = (reactancePu: number): Complex =>
     scale({ re: machine.rPu ?? 0, im: reactancePu }, (baseMva * 1000) / machine.kva);
   const earth = machine.kind === 'induction' ? null : earthing(machine.neutral, ohms);

@@ -3,9 +3,10 @@ import type { Project } from '../../shared/schemas/study.ts';
 import { allPhases } from './case.ts';
 import type { CaseChoice, Model } from './case.ts';
 import { judgeGrounding } from './grounding.ts';
+import { nodeAt } from './model-parts.ts';
 import { projectKva } from './project-size.ts';
 import type { SolvedCase } from './solve-case.ts';
-import { findFaultPoint, solveCase } from './solve-case.ts';
+import { findFaultPoint, withCase } from './solve-case.ts';
 
 /* What a study reports of the project: ratios at its point of interconnection, and the grounding there. */
 
@@ -37,7 +38,7 @@ function over(current: number | null, base: number | null): number | null {
 
 /** Fault power before over the project's: √3·kV·I of three phases, on a lateral kV/√3·I of line to ground. */
 function shortCircuitRatio(project: Project, model: Model, before: NodeState): number | null {
-  const { kv, phases } = model.nodes[model.nodeIndex.get(project.node)!]!;
+  const { kv, phases } = nodeAt(model, model.nodeIndex.get(project.node)!);
   const faultKva =
     phases === allPhases ? Math.sqrt(3) * kv * before.threePhase! : (kv / Math.sqrt(3)) * before.lineGround!;
   return over(faultKva, projectKva(project));
@@ -49,8 +50,8 @@ export function reportGrounding(solved: SolvedCase, node: number): Grounding | n
   return point ? judgeGrounding(point.z1, point.z2, point.z0) : null;
 }
 
-/** Solves the model with every source out and every machine, bank and transformer in, the project's included. */
-export function solveIsland(model: Model): SolvedCase {
+/** Reports the grounding with every source out and every machine, bank and transformer in, the project's included. */
+export function reportIslandGrounding(model: Model, node: number): Grounding | null {
   const island: CaseChoice = {
     sources: 'out',
     prefaultFactor: 1,
@@ -60,5 +61,5 @@ export function solveIsland(model: Model): SolvedCase {
     project: true,
     companions: true,
   };
-  return solveCase(model, island);
+  return withCase(model, island, (solved) => reportGrounding(solved, node));
 }

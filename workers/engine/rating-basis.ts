@@ -38,9 +38,14 @@ export function findTestXr(device: Device, { kv, frequencyHz }: Service): { xr: 
  */
 export function ratingFactor(device: Device, service: Service, xr: number): number {
   if (isAsymmetrical(device)) return asymmetryFactor(xr);
-  const cycles = isBreaker(device) && service.kv > upToKv ? usualPartingCycles : 0.5;
+  const cycles = comparedCycles(device, service);
   const tested = asymmetryFactor(findTestXr(device, service).xr, cycles);
   return Math.max(1, asymmetryFactor(xr, cycles) / tested);
+}
+
+/** How many cycles after the fault began currents are compared. */
+export function comparedCycles(device: Device, { kv }: Service): number {
+  return isBreaker(device) && kv > upToKv ? usualPartingCycles : 0.5;
 }
 
 export function isAsymmetrical({ ratingBasis }: Device): boolean {

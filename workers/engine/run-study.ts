@@ -4,18 +4,23 @@ import { resultFormat } from '../../shared/schemas/study-result.ts';
 import type { Study } from '../../shared/schemas/study.ts';
 import { reportDevices } from './device-results.ts';
 import { listCases } from './findings/operating-cases.ts';
+import type { Answered } from './findings/judge.ts';
 import { answerQuestions } from './findings/questions.ts';
+import type { Screening } from './findings/screening.ts';
 import { traceUpstream } from './findings/upstream.ts';
 import { reportLines } from './line-results.ts';
+import { nodeAt } from './model-parts.ts';
 import { reportNodes } from './node-results.ts';
 import { listMethodWarnings } from './iec60909.ts';
 import { prepareModel } from './prepare-model.ts';
-import { reportGrounding, reportProject, solveIsland } from './project-results.ts';
+import { reportGrounding, reportIslandGrounding, reportProject } from './project-results.ts';
 import type { SolvedCase } from './solve-case.ts';
 import { listScenarioWarnings } from './scenario-warnings.ts';
 import { makeStateSolvers } from './state-solver.ts';
 import type { StateName } from './states.ts';
 import { listWarnings } from './warnings.ts';
+import type { Arrays } from './work-arrays.ts';
+import { newArrays, withWorkArrays } from './work-arrays.ts';
 
 /** A step that is about to be taken: `done` of `total` are behind it. */
 export type StudyStep = { key: string; label: string; done: number; total: number };
@@ -33,11 +38,27 @@ const steps = [
   { key: 'finished', label: 'Finished' },
 ] as const;
 
+/** A result with what the working sheet shows besides: the solved cases and the answers' working; both need a project. */
+export type WorkedStudy = {
+  result: StudyResult;
+  worked: { screening: Screening; answers: readonly Answered[] } | undefined;
+};
+
 /**
  * Computes everything that a study reports, from a study that `readStudy` has checked; pure, so that the same study
  * and rule set always give the same result.
  */
 export function runStudy(study: Study, ruleSet: RuleSet, onStep?: (step: StudyStep) => void): StudyResult {
+  return withWorkArrays((arrays) => workStudy(study, ruleSet, onStep, arrays).result);
+}
+
+/** As `runStudy`, and keeps what led there, which lives as long as `arrays` do. */
+export function workStudy(
+  study: Study,
+  ruleSet: RuleSet,
+  onStep?: (step: StudyStep) => void,
+  arrays: Arrays = newArrays,
+): WorkedStudy {
   const begin = (key: (typeof steps)[number]['key']) => {
     const done = steps.findIndex((step) => step.key === key);
     onStep?.({ ...steps[done]!, done, total: steps.length - 1 });
@@ -45,9 +66,9 @@ export function runStudy(study: Study, ruleSet: RuleSet, onStep?: (step: StudySt
 
   begin('network');
   const model = prepareModel(study);
-  const operating = makeStateSolvers(study, model);
+  const operating = makeStateSolvers(study, model, arrays);
   const solver = operating.base;
-  const { kv } = model.nodes[model.nodeIndex.get(study.project?.node ?? study.feeder.nodes[0]!.id)!]!;
+  const { kv } = nodeAt(model, model.nodeIndex.get(study.project?.node ?? study.feeder.nodes[0]!.id)!);
   const solve = (state: StateName): SolvedCase => {
     begin(state);
     return solver.solve(state, kv);
@@ -61,7 +82,7 @@ export function runStudy(study: Study, ruleSet: RuleSet, onStep?: (step: StudySt
 
   begin('nodes');
   const nodes = reportNodes(
-    model.nodes,
+    study.feeder.nodes,
     solver.solve,
     study.project !== undefined,
     study.minimumFaultOhm ?? 0,
@@ -85,6 +106,7 @@ export function runStudy(study: Study, ruleSet: RuleSet, onStep?: (step: StudySt
       ...warnings,
     ],
   };
+  let worked: WorkedStudy['worked'];
   if (project) {
     const poi = model.nodeIndex.get(project.node)!;
     begin('grounding');
@@ -92,13 +114,16 @@ export function runStudy(study: Study, ruleSet: RuleSet, onStep?: (step: StudySt
     result.project = reportProject(project, model, { ...atPoi, after: atPoi.after! });
     result.grounding = {
       connected: reportGrounding(states.after, poi),
-      island: reportGrounding(solveIsland(model), poi),
+      island: reportIslandGrounding(model, poi),
     };
     begin('findings');
     const upstream = traceUpstream(model, states.after.choice, poi);
     const cases = listCases({ operating, model, kv, poi, upstream });
-    result.findings = answerQuestions({ study, project, ruleSet, model, states, poi, upstream, cases });
+    const screening = { study, project, ruleSet, model, states, poi, upstream, cases };
+    const answers = answerQuestions(screening);
+    result.findings = answers.map(({ working: _, ...finding }) => finding);
+    worked = { screening, answers };
   }
   begin('finished');
-  return result;
+  return { result, worked };
 }

@@ -15,6 +15,7 @@ const words = {
   machines: 'machine',
   inverters: 'inverter',
   loads: 'load',
+  capacitors: 'capacitor',
   lines: 'line',
   transformers: 'transformer',
   switches: 'switch',

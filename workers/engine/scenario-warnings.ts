@@ -1,4 +1,5 @@
 import { isPresent } from './case.ts';
+import { nodeAt } from './model-parts.ts';
 import { nameOf } from './scenarios.ts';
 import type { SolvedCase } from './solve-case.ts';
 import { busOfNode } from './solve-case.ts';
@@ -30,9 +31,13 @@ export function listScenarioWarnings(
 
 /** Nodes that nothing feeds before the project, though in the model as it stands something does; not those it takes out. */
 function listDead(solved: SolvedCase, base: SolvedCase): string[] {
-  return solved.model.nodes
-    .filter((node, index) => isFed(base, index) && !isFed(solved, index) && isPresent(solved.choice, node))
-    .map(({ id }) => id);
+  const dead: string[] = [];
+  for (let node = 0; node < solved.topology.busOf.length; node++) {
+    if (isFed(solved, node) || !isFed(base, node)) continue;
+    const element = nodeAt(solved.model, node);
+    if (isPresent(solved.choice, element)) dead.push(element.id);
+  }
+  return dead;
 }
 
 function isFed(solved: SolvedCase, node: number): boolean {

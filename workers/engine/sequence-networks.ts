@@ -3,8 +3,10 @@ import { isMember, isPresent } from './case.ts';
 import type { Complex, ComplexArray } from './complex.ts';
 import { complexArray } from './complex.ts';
 import { factorize, solveInPlace } from './factorization.ts';
+import { branchAt } from './model-parts.ts';
 import type { SelectedInverse } from './selected-inverse.ts';
 import { invertSelected, meshDrivingPoint, meshTransfer } from './selected-inverse.ts';
+import type { Mesh, MeshAdmittances } from './mesh.ts';
 import type { Topology } from './topology.ts';
 import type { Trees } from './tree-sweep.ts';
 import {
@@ -14,6 +16,8 @@ import {
   sweepVoltagesFromMesh,
 } from './tree-sweep.ts';
 import { wiringOf } from './wiring.ts';
+import type { Arrays } from './work-arrays.ts';
+import { newArrays } from './work-arrays.ts';
 
 /*
  * The three networks of a case. They share buses, branches and elimination order; the zero sequence merely lacks some of
@@ -45,47 +49,58 @@ export function solveSequenceNetworks(
   model: Model,
   choice: CaseChoice,
   topology: Topology,
+  arrays: Arrays = newArrays,
 ): SequenceNetworks {
-  return ofSequences(model, choice, (sequence) =>
-    solveNetwork(topology, sequence, listFeeds(model, choice, topology, sequence)),
+  return ofSequences(model, choice, topology, (sequence, feeds) =>
+    solveNetwork(topology, sequence, feeds, arrays),
   );
 }
 
-/** As `solveSequenceNetworks`, in less memory: what only later sweeps need is kept in `spare`, one after the other. */
+/** As `solveSequenceNetworks`, in less memory: what only later sweeps need is written over, one sequence after the other. */
 export function solveDrivingPoints(
   model: Model,
   choice: CaseChoice,
   topology: Topology,
-  spare: ComplexArray,
+  arrays: Arrays,
 ): DrivingPoints {
-  return ofSequences(model, choice, (sequence) => {
+  const spare = arrays.complex(topology.busCount);
+  return ofSequences(model, choice, topology, (sequence, feeds) => {
     spare.re.fill(0);
     spare.im.fill(0);
-    const feeds = listFeeds(model, choice, topology, sequence);
-    const { z, hasPath } = solveNetwork(topology, sequence, feeds, spare);
+    const { z, hasPath } = solveNetwork(topology, sequence, feeds, arrays, spare);
     return { z, hasPath };
   });
 }
 
-function ofSequences<N>(model: Model, choice: CaseChoice, solve: (sequence: Sequence) => N): OfSequences<N> {
-  const positive = solve('z1');
+/** Solves each sequence with what feeds it; positive and negative together where nothing tells them apart. */
+export function ofSequences<N>(
+  model: Model,
+  choice: CaseChoice,
+  topology: Topology,
+  solve: (sequence: Sequence, feeds: readonly Feed[]) => N,
+): OfSequences<N> {
+  const shunts = listShunts(model, choice);
+  const solveOne = (sequence: Sequence) =>
+    solve(sequence, listFeeds(model, choice, topology, sequence, shunts));
+  const positive = solveOne('z1');
   return {
     positive,
-    // Lines and transformers do not tell the two apart, so only machines and sources can.
-    negative: listShunts(model, choice).every(isSymmetrical) ? positive : solve('z2'),
-    zero: solve('z0'),
+    // Lines and transformers do not, so only machines and sources can.
+    negative: shunts.every(isSymmetrical) ? positive : solveOne('z2'),
+    zero: solveOne('z0'),
   };
 }
 
-type Sequence = 'z1' | 'z2' | 'z0';
+export type Sequence = 'z1' | 'z2' | 'z0';
 
-type Feed = { bus: number; z: Complex };
+export type Feed = { bus: number; z: Complex };
 
 function solveNetwork(
   topology: Topology,
   sequence: Sequence,
   feeds: readonly Feed[],
-  shares = complexArray(topology.busCount),
+  arrays: Arrays,
+  shares = arrays.complex(topology.busCount),
 ): SequenceNetwork {
   const { busCount, meshCount } = topology;
   const isZero = sequence === 'z0';
@@ -94,7 +109,7 @@ function solveNetwork(
     series: isZero ? topology.z0 : topology.z1,
     meshCount,
   };
-  const hasPath = new Uint8Array(busCount);
+  const hasPath = arrays.bytes(busCount);
   const meshScale = new Float64Array(meshCount);
   for (const { bus, z } of feeds) {
     const square = z.re * z.re + z.im * z.im;
@@ -105,8 +120,9 @@ function solveNetwork(
   }
   const weakBuses: number[] = [];
   sweepTowardsMesh(trees, shares, hasPath, meshScale, weakBuses);
-  const z = complexArray(busCount);
-  const mesh = solveMesh(topology, isZero, shares, hasPath, meshScale, weakBuses);
+  const z = arrays.complex(busCount);
+  const series = isZero ? topology.mesh.zero : topology.mesh.positive;
+  const mesh = solveMesh(topology.mesh, isZero, series, shares, hasPath, meshScale, weakBuses);
   for (let bus = 0; bus < meshCount; bus++) {
     const own = meshDrivingPoint(mesh, bus);
     z.re[bus] = own.re;
@@ -117,17 +133,18 @@ function solveNetwork(
 }
 
 /** Adds the mesh's branches to what its buses carry, and inverts; says in `hasPath` which parts of it are fed. */
-function solveMesh(
-  { mesh, meshCount }: Topology,
+export function solveMesh(
+  mesh: Mesh,
   isZero: boolean,
+  series: MeshAdmittances,
   behind: ComplexArray,
   hasPath: Uint8Array,
   scale: Float64Array,
   weakBuses: number[],
 ): SelectedInverse {
   const { structure } = mesh;
-  const series = isZero ? mesh.zero : mesh.positive;
   const partOf = isZero ? mesh.zeroPartOf : mesh.partOf;
+  const meshCount = partOf.length;
   for (let bus = 0; bus < meshCount; bus++) if (hasPath[bus]) hasPath[partOf[bus]!] = 1;
   const diagonal = complexArray(meshCount);
   for (let bus = 0; bus < meshCount; bus++) {
@@ -201,9 +218,10 @@ export function listFeeds(
   choice: CaseChoice,
   topology: Topology,
   sequence: Sequence,
+  shunts = listShunts(model, choice),
 ): readonly Feed[] {
   const feeds = sequence === 'z0' ? listTransformerEarths(model, choice, topology) : [];
-  for (const shunt of listShunts(model, choice)) {
+  for (const shunt of shunts) {
     const z = shunt[sequence];
     const bus = topology.busOf[shunt.node]!;
     if (z && bus !== -1) feeds.push({ bus, z });
@@ -215,7 +233,7 @@ export function listFeeds(
 function listTransformerEarths(model: Model, choice: CaseChoice, { busOf }: Topology): Feed[] {
   const earths: Feed[] = [];
   for (const { branch: index, end, z } of wiringOf(model).earths) {
-    const branch = model.branches[index]!;
+    const branch = branchAt(model, index);
     if (!isPresent(choice, branch)) continue;
     const opening = choice.opened?.find((each) => each.branch === index);
     if (opening?.end === end || busOf[branch[end]] === -1) continue;

@@ -2,10 +2,12 @@ import type { Model, Shunt } from './case.ts';
 import type { Complex, ComplexArray } from './complex.ts';
 import { complexArray } from './complex.ts';
 import { addUpPaths } from './laterals.ts';
+import { modelAlike } from './model-parts.ts';
 import { solveDrivingPoints } from './sequence-networks.ts';
 import type { SolvedCase, TheveninCase } from './solve-case.ts';
 import { topologyAlike } from './topology.ts';
 import { wiringOf } from './wiring.ts';
+import type { Arrays } from './work-arrays.ts';
 
 /* A solved case with other impedances: what is joined to what is not looked for again. */
 
@@ -32,8 +34,7 @@ export function changeImpedances(model: Model, change: ImpedanceChange): Model {
   const z0 = changeParts(z0Re, z0Im, network, zeroGoesThrough);
   const self = changeParts(selfRe, selfIm, change.path);
   const mutual = changeParts(mutualRe, mutualIm, change.path);
-  return {
-    ...model,
+  return modelAlike(model, {
     wiring: {
       ...wiring,
       z1Re: z1.re,
@@ -49,7 +50,7 @@ export function changeImpedances(model: Model, change: ImpedanceChange): Model {
     sources: model.sources.map(({ max, min }) => ({ max: shunt(max), min: shunt(min) })),
     machines: model.machines.map(shunt),
     groundingBanks: model.groundingBanks.map(shunt),
-  };
+  });
 }
 
 /** Changes all impedances, or those that `only` marks. */
@@ -70,14 +71,14 @@ function changeParts(
 
 /**
  * Solves the networks of a case on `model`, which differs from the case's own in its impedances alone. Impedances are
- * right in what comes back; voltages before the fault are still those of the case. `spare` is for numbers on the way.
+ * right in what comes back; voltages before the fault are still those of the case.
  */
 export function solveAlike(
   { topology: alike, choice, openCircuit }: SolvedCase,
   model: Model,
-  spare = complexArray(alike.busCount),
+  arrays: Arrays,
 ): TheveninCase {
   const topology = topologyAlike(alike, model);
-  const networks = solveDrivingPoints(model, choice, topology, spare);
+  const networks = solveDrivingPoints(model, choice, topology, arrays);
   return { topology, networks, paths: addUpPaths(model, topology), openCircuit };
 }

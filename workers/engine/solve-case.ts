@@ -10,6 +10,8 @@ import type { DrivingPoints, SequenceNetworks } from './sequence-networks.ts';
 import { drivingPoint, solveSequenceNetworks } from './sequence-networks.ts';
 import type { Topology } from './topology.ts';
 import { shareTopology } from './topology.ts';
+import type { Arrays } from './work-arrays.ts';
+import { newArrays, withWorkArrays } from './work-arrays.ts';
 
 /** A case with everything that a fault anywhere in it needs. */
 export type SolvedCase = {
@@ -26,12 +28,21 @@ export type TheveninCase = Pick<SolvedCase, 'topology' | 'paths' | 'openCircuit'
   readonly networks: DrivingPoints;
 };
 
-/** Solves one choice of what is in and out. */
-export function solveCase(model: Model, choice: CaseChoice): SolvedCase {
+/** Solves one choice of what is in and out; the case lives as long as `arrays` do. */
+export function solveCase(model: Model, choice: CaseChoice, arrays: Arrays = newArrays): SolvedCase {
   const topology = shareTopology(model, choice);
-  const networks = solveSequenceNetworks(model, choice, topology);
-  const openCircuit = solveOpenCircuit(model, choice, topology, networks);
+  const networks = solveSequenceNetworks(model, choice, topology, arrays);
+  const openCircuit = solveOpenCircuit(model, choice, topology, networks, arrays);
   return { model, choice, topology, networks, paths: addUpPaths(model, topology), openCircuit };
+}
+
+/** Solves a case that is needed only as long as `use` runs; nothing that it gives may hold any of the case's arrays. */
+export function withCase<R>(
+  model: Model,
+  choice: CaseChoice,
+  use: (solved: SolvedCase, arrays: Arrays) => R,
+): R {
+  return withWorkArrays((arrays) => use(solveCase(model, choice, arrays), arrays));
 }
 
 /** Gives the case without its inverters, which are in none of its networks. */

@@ -12,6 +12,8 @@ import { solveCase } from './solve-case.ts';
 import type { StateName } from './states.ts';
 import { choiceOfState } from './states.ts';
 import type { SeparateCases } from './x-over-r.ts';
+import type { Arrays } from './work-arrays.ts';
+import { newArrays } from './work-arrays.ts';
 import { reduceSeparately, separateModels } from './x-over-r.ts';
 
 /*
@@ -44,8 +46,8 @@ export type OperatingCases = { readonly base: StateSolver; readonly scenarios: r
 
 type Network = { study: Study; model: Model };
 
-/** Makes solvers that solve each case once; `model` is the study's. */
-export function makeStateSolvers(study: Study, model: Model): OperatingCases {
+/** Makes solvers that solve each case once; `model` is the study's. What they give lives as long as `arrays` do. */
+export function makeStateSolvers(study: Study, model: Model, arrays: Arrays = newArrays): OperatingCases {
   const isIec = study.options?.method === 'iec60909';
   const hasMotors = study.options?.motorLoad === true;
   const prepare = (given: Study): Network => {
@@ -67,17 +69,19 @@ export function makeStateSolvers(study: Study, model: Model): OperatingCases {
     });
     const solve = remember((level: VoltageLevel) =>
       remember((state: StateName) =>
-        solveCase(state === 'minimum' ? model : largest.model, choose(state, level)),
+        solveCase(state === 'minimum' ? model : largest.model, choose(state, level), arrays),
       ),
     );
     const solveDuty = remember((level: VoltageLevel) =>
       remember((state: DutyState): DutyCase => {
-        const solved = hasMotors ? solveCase(forDuty().model, choose(state, level)) : solve(level)(state);
+        const solved = hasMotors
+          ? solveCase(forDuty().model, choose(state, level), arrays)
+          : solve(level)(state);
         return {
           solved,
           frequencyHz: study.frequencyHz,
-          separate: once(() => reduceSeparately(separated(), solved)),
-          ...(isIec && { equivalent: once(() => solveAlike(solved, slowed())) }),
+          separate: once(() => reduceSeparately(separated(), solved, arrays)),
+          ...(isIec && { equivalent: once(() => solveAlike(solved, slowed(), arrays)) }),
         };
       }),
     );

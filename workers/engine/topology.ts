@@ -9,6 +9,8 @@ import type { TakenOff } from './trees.ts';
 import { takeTreesOff } from './trees.ts';
 import type { Wiring } from './wiring.ts';
 import { companionFlag, ofProjectFlag, wiringOf } from './wiring.ts';
+import type { Arrays } from './work-arrays.ts';
+import { withWorkArrays } from './work-arrays.ts';
 
 /* What is joined to what in one case: buses, the branches of the core between them, and the laterals. */
 
@@ -61,10 +63,15 @@ export function shareTopology(model: Model, choice: CaseChoice): Topology {
 
 /** Finds what is joined to what; time and memory are linear in the model but for the mesh's elimination order. */
 export function traceTopology(model: Model, choice: CaseChoice): Topology {
+  return withWorkArrays((arrays) => traceWith(arrays, model, choice));
+}
+
+/** What is needed on the way only is in `arrays`. */
+function traceWith(arrays: Arrays, model: Model, choice: CaseChoice): Topology {
   const wiring = wiringOf(model);
-  const joined = joinSwitchedNodes(model, wiring, choice);
-  const taken = takeTreesOff(joined, wiring.isThreePhase);
-  const { busOfGroup, busCount, meshCount } = numberBuses(joined, wiring, taken);
+  const joined = joinSwitchedNodes(model, choice, arrays);
+  const taken = takeTreesOff(joined, wiring.isThreePhase, arrays);
+  const { busOfGroup, busCount, meshCount } = numberBuses(joined, wiring, taken, arrays);
   const { parent, parentBranch } = hangBuses(taken, busOfGroup, busCount);
   const mesh = traceMesh(joined, taken, wiring, busOfGroup, meshCount);
   const busOf = ofNodes(joined, busOfGroup);
@@ -78,7 +85,7 @@ export function traceTopology(model: Model, choice: CaseChoice): Topology {
     parentBranch,
     ...gatherImpedances(wiring, parent, parentBranch, meshCount),
     clockHours: addUpClockHours(wiring, { busOf, mesh, meshCount, parent, parentBranch }),
-    laterals: listLaterals(model, joined, taken, busOfGroup),
+    laterals: listLaterals(wiring, joined, taken, busOfGroup, arrays),
   };
 }
 
@@ -94,8 +101,8 @@ export function topologyAlike(topology: Topology, model: Model): Topology {
 }
 
 /** The mesh in the order of the file, then the trees from the mesh outwards. */
-function numberBuses({ groupOf }: JoinedNodes, { isThreePhase }: Wiring, taken: TakenOff) {
-  const busOfGroup = new Int32Array(groupOf.length).fill(-1);
+function numberBuses({ groupOf }: JoinedNodes, { isThreePhase }: Wiring, taken: TakenOff, arrays: Arrays) {
+  const busOfGroup = arrays.integers(groupOf.length).fill(-1);
   let busCount = 0;
   for (let node = 0; node < groupOf.length; node++) {
     if (groupOf[node] === node && isThreePhase[node] && taken.parent[node] === -1)
@@ -196,9 +203,15 @@ function addUpClockHours(
   return hours;
 }
 
-function listLaterals(model: Model, joined: JoinedNodes, taken: TakenOff, busOfGroup: Int32Array): Laterals {
+function listLaterals(
+  wiring: Wiring,
+  joined: JoinedNodes,
+  taken: TakenOff,
+  busOfGroup: Int32Array,
+  arrays: Arrays,
+): Laterals {
   const { lateralCount } = taken;
-  const spotOfGroup = new Int32Array(joined.groupOf.length).fill(-1);
+  const spotOfGroup = arrays.integers(joined.groupOf.length).fill(-1);
   const parent = new Int32Array(lateralCount);
   const branch = new Int32Array(lateralCount);
   const tap = new Int32Array(lateralCount);
@@ -215,8 +228,8 @@ function listLaterals(model: Model, joined: JoinedNodes, taken: TakenOff, busOfG
     parent[spot] = parentSpot;
     tap[spot] = parentSpot === -1 ? busOfGroup[above]! : tap[parentSpot]!;
     const edge = taken.parentEdge[group]!;
-    branch[spot] = edge < model.branches.length ? edge : -1;
-    phases[spot] = model.nodes[group]!.phases;
+    branch[spot] = edge < wiring.from.length ? edge : -1;
+    phases[spot] = wiring.nodePhases[group]!;
   }
   return {
     spotOf: ofNodes(joined, spotOfGroup),

@@ -1,13 +1,16 @@
 import type { PhaseTriple } from './case.ts';
 import type { Complex, ComplexArray } from './complex.ts';
-import { at, complexArray, divide, multiply, subtract, zero } from './complex.ts';
+import { at, divide, multiply, subtract, zero } from './complex.ts';
 import type { Fault } from './faults.ts';
 import { phasesAt } from './laterals.ts';
+import { branchAt } from './model-parts.ts';
 import { negativeTurn, phasesOf, sequencesOf } from './open-circuit.ts';
 import type { SequenceNetwork } from './sequence-networks.ts';
 import { solveVoltages } from './sequence-networks.ts';
 import type { SolvedCase } from './solve-case.ts';
 import { busOfNode } from './solve-case.ts';
+import type { Arrays } from './work-arrays.ts';
+import { newArrays } from './work-arrays.ts';
 
 /* What a current at one place does everywhere else: columns of the impedance matrices, one sweep each. */
 
@@ -15,8 +18,12 @@ import { busOfNode } from './solve-case.ts';
 export type Transfers = { node: number; z1: ComplexArray; z2: ComplexArray; z0: ComplexArray };
 
 /** Gives a column of an impedance matrix; zero where current has no path. */
-export function transferColumn(network: SequenceNetwork, bus: number): ComplexArray {
-  const column = complexArray(network.hasPath.length);
+export function transferColumn(
+  network: SequenceNetwork,
+  bus: number,
+  arrays: Arrays = newArrays,
+): ComplexArray {
+  const column = arrays.complex(network.hasPath.length);
   if (bus === -1 || !network.hasPath[bus]) return column;
   column.re[bus] = 1;
   solveVoltages(network, column);
@@ -24,15 +31,15 @@ export function transferColumn(network: SequenceNetwork, bus: number): ComplexAr
 }
 
 /** Gives the transfer impedances between a node, or its tap, and every bus. */
-export function transfersFrom(solved: SolvedCase, node: number): Transfers {
+export function transfersFrom(solved: SolvedCase, node: number, arrays: Arrays = newArrays): Transfers {
   const { positive, negative, zero: zeroNetwork } = solved.networks;
   const bus = busOfNode(solved, node);
-  const z1 = transferColumn(positive, bus);
+  const z1 = transferColumn(positive, bus, arrays);
   return {
     node,
     z1,
-    z2: negative === positive ? z1 : transferColumn(negative, bus),
-    z0: transferColumn(zeroNetwork, bus),
+    z2: negative === positive ? z1 : transferColumn(negative, bus, arrays),
+    z0: transferColumn(zeroNetwork, bus, arrays),
   };
 }
 
@@ -49,7 +56,7 @@ export function currentInBranch(
   end: 'from' | 'to',
 ): PhaseTriple {
   const { topology, openCircuit, model } = solved;
-  const branch = model.branches[branchIndex]!;
+  const branch = branchAt(model, branchIndex);
   const k = topology.busOf[branch[end]]!;
   const m = topology.busOf[branch[end === 'from' ? 'to' : 'from']]!;
   if (k === -1 || m === -1) return currentInLateral(solved, transfers.node, fault, branchIndex, end);
@@ -85,9 +92,9 @@ function currentInLateral(
   end: 'from' | 'to',
 ): PhaseTriple {
   const { spotOf, parent, branch } = topology.laterals;
-  const fromSpot = spotOf[model.branches[branchIndex]!.from]!;
+  const fromSpot = spotOf[branchAt(model, branchIndex).from]!;
   const isOuter = fromSpot !== -1 && branch[fromSpot] === branchIndex;
-  const outer = isOuter ? fromSpot : spotOf[model.branches[branchIndex]!.to]!;
+  const outer = isOuter ? fromSpot : spotOf[branchAt(model, branchIndex).to]!;
   const outwards = (end === 'from') === isOuter;
   let spot = spotOf[faultNode]!;
   while (spot > outer) spot = parent[spot]!;

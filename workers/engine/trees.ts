@@ -1,4 +1,5 @@
 import type { JoinedNodes } from './joined-nodes.ts';
+import type { Arrays } from './work-arrays.ts';
 
 /*
  * Taking trees off a network leaf by leaf. A vertex keeps only how many edges it has left and the exclusive or of their
@@ -19,10 +20,14 @@ export type TakenOff = {
 };
 
 /** Takes off first the laterals, which leaves them rooted at their taps, then the trees of three-phase groups. */
-export function takeTreesOff({ groupOf, from, to }: JoinedNodes, isThreePhase: Uint8Array): TakenOff {
+export function takeTreesOff(
+  { groupOf, from, to }: JoinedNodes,
+  isThreePhase: Uint8Array,
+  arrays: Arrays,
+): TakenOff {
   const vertices = groupOf.length;
-  const degree = new Int32Array(vertices);
-  const edges = new Int32Array(vertices);
+  const degree = arrays.integers(vertices);
+  const edges = arrays.integers(vertices);
   for (let edge = 0; edge < from.length; edge++) {
     const u = from[edge]!;
     const v = to[edge]!;
@@ -32,10 +37,10 @@ export function takeTreesOff({ groupOf, from, to }: JoinedNodes, isThreePhase: U
     edges[u]! ^= edge;
     edges[v]! ^= edge;
   }
-  const order = new Int32Array(vertices);
-  const parent = new Int32Array(vertices).fill(-1);
-  const parentEdge = new Int32Array(vertices).fill(-1);
-  const isEdgeTaken = new Uint8Array(from.length);
+  const order = arrays.integers(vertices);
+  const parent = arrays.integers(vertices).fill(-1);
+  const parentEdge = arrays.integers(vertices).fill(-1);
+  const isEdgeTaken = arrays.bytes(from.length);
   let count = 0;
   const takeAll = (threePhase: number) => {
     for (let first = vertices - 1; first >= 0; first--) {

@@ -1,4 +1,5 @@
 import type { Study } from '../../shared/schemas/study.ts';
+import { nodeAt } from './model-parts.ts';
 import type { SolvedCase } from './solve-case.ts';
 import type { StateName } from './states.ts';
 
@@ -21,12 +22,12 @@ export function listCaseWarnings(cases: readonly SolvedCase[]): Set<string> {
   const warnings = new Set<string>();
   for (const { model, topology, networks, openCircuit } of cases) {
     for (const node of openCircuit.strandedInverters) {
-      const { id } = model.nodes[node]!;
+      const { id } = nodeAt(model, node);
       warnings.add(`A one-phase inverter at ${id} has no way back for its current and is left out.`);
     }
     for (const [name, { weakBuses }] of Object.entries(networks)) {
       for (const bus of weakBuses) {
-        const { id } = model.nodes[topology.busOf.indexOf(bus)]!;
+        const { id } = nodeAt(model, topology.busOf.indexOf(bus));
         warnings.add(
           `The ${name} sequence nearly resonates at ${id}: currents there are not to be relied on.`,
         );

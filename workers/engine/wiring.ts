@@ -12,6 +12,7 @@ export const companionFlag = 2;
 
 export type Wiring = {
   readonly nodeFlags: Uint8Array;
+  readonly nodePhases: Uint8Array;
   /** 1 where a node has all three phases. */
   readonly isThreePhase: Uint8Array;
   readonly from: Int32Array;
@@ -51,14 +52,21 @@ export function wiringOf(model: Model): Wiring {
   return wiring;
 }
 
+/** Tells what the wiring of a new model is, which else is laid out from its lists. */
+export function rememberWiring(model: Model, wiring: Wiring): void {
+  known.set(model, wiring);
+}
+
 function layOut({ nodes, branches, switches }: Model): Wiring {
   const nodeFlags = new Uint8Array(nodes.length);
+  const nodePhases = new Uint8Array(nodes.length);
   const isThreePhase = new Uint8Array(nodes.length);
   let flags = 0;
   for (let index = 0; index < nodes.length; index++) {
     const node = nodes[index]!;
     nodeFlags[index] = flagsOf(node);
     flags |= nodeFlags[index]!;
+    nodePhases[index] = node.phases;
     isThreePhase[index] = node.phases === allPhases ? 1 : 0;
   }
   for (const link of switches) flags |= flagsOf(link);
@@ -94,6 +102,7 @@ function layOut({ nodes, branches, switches }: Model): Wiring {
   }
   return {
     nodeFlags,
+    nodePhases,
     isThreePhase,
     from,
     to,

@@ -3,14 +3,20 @@ import type { Machine, Study } from '../../shared/schemas/study.ts';
 import { largestXr, ratioOf } from './asymmetry.ts';
 import type { Model, Shunt } from './case.ts';
 import { allPhases } from './case.ts';
-import type { Complex } from './complex.ts';
-import { add, complexArray, divide, multiply, scale, subtract, sum } from './complex.ts';
+import type { Complex, ComplexArray } from './complex.ts';
+import { add, divide, multiply, scale, subtract, sum } from './complex.ts';
+import { ElementList } from './element-list.ts';
 import type { FaultPoint } from './faults.ts';
-import { changeImpedances, solveAlike } from './solve-alike.ts';
+import { modelAlike, nodeAt } from './model-parts.ts';
+import type { RealPart } from './real-networks.ts';
+import { solveRealNetwork } from './real-networks.ts';
+import { ofSequences } from './sequence-networks.ts';
+import { changeImpedances } from './solve-alike.ts';
 import type { SolvedCase, TheveninCase } from './solve-case.ts';
 import { findFaultPoint } from './solve-case.ts';
-import { eachElement } from './study-elements.ts';
 import { wiringOf } from './wiring.ts';
+import type { Arrays } from './work-arrays.ts';
+import { newArrays } from './work-arrays.ts';
 
 /*
  * X/R at a fault. The direct current of a network with several paths fades with several time constants; X over R of
@@ -20,40 +26,98 @@ import { wiringOf } from './wiring.ts';
  */
 
 /** The same network twice, as resistances alone and as reactances alone. */
-export type SeparateModels = { resistances: Model; reactances: Model };
+export type SeparateModels = {
+  /** The network as it is, with a resistance in each machine. */
+  readonly complete: Model;
+  /** Made when they are first asked for. */
+  readonly resistances: Model;
+  readonly reactances: Model;
+};
 
 export type SeparateCases = { resistances: TheveninCase; reactances: TheveninCase };
 
+// A resistance of zero would short-circuit the network, as would a reactance of zero.
+const resistanceOf: RealPart = (re, im) => Math.max(re, Math.abs(im) / largestXr);
+const reactanceOf: RealPart = (re, im) => (Math.abs(im) * largestXr < re ? re / largestXr : im);
+
 /** Makes the two networks of the model of a study. */
 export function separateModels(study: Study, model: Model): SeparateModels {
-  const complete = { ...model, wiring: wiringOf(model), machines: completeResistances(study, model) };
+  const complete = modelAlike(model, {
+    wiring: wiringOf(model),
+    machines: completeResistances(study, model),
+  });
   const none = () => 0;
+  let resistances: Model | undefined;
+  let reactances: Model | undefined;
   return {
-    resistances: changeImpedances(complete, {
-      // A resistance of zero would short-circuit the network, as would a reactance of zero.
-      network: { re: (re, im) => Math.max(re, Math.abs(im) / largestXr), im: none },
-      path: { re: (re) => re, im: none },
-    }),
-    reactances: changeImpedances(complete, {
-      network: { re: none, im: (re, im) => (Math.abs(im) * largestXr < re ? re / largestXr : im) },
-      path: { re: none, im: (_, im) => im },
-    }),
+    complete,
+    get resistances() {
+      return (resistances ??= changeImpedances(complete, {
+        network: { re: resistanceOf, im: none },
+        path: { re: (re) => re, im: none },
+      }));
+    },
+    get reactances() {
+      return (reactances ??= changeImpedances(complete, {
+        network: { re: none, im: reactanceOf },
+        path: { re: none, im: (_, im) => im },
+      }));
+    },
   };
 }
 
 /** Solves both networks of the model of a case as they are in that case. */
-export function reduceSeparately(models: SeparateModels, solved: SolvedCase): SeparateCases {
-  const spare = complexArray(solved.topology.busCount);
+export function reduceSeparately(
+  { complete }: Pick<SeparateModels, 'complete'>,
+  { choice, topology, paths, openCircuit }: SolvedCase,
+  arrays: Arrays = newArrays,
+): SeparateCases {
+  const spare = arrays.floats(topology.busCount);
+  const wiring = wiringOf(complete);
+  const solved = ofSequences(complete, choice, topology, (sequence, feeds) => {
+    const whole = { topology, wiring, isZero: sequence === 'z0', feeds };
+    return {
+      resistances: solveRealNetwork(whole, resistanceOf, arrays, spare),
+      reactances: solveRealNetwork(whole, reactanceOf, arrays, spare),
+    };
+  });
+  const zeros = arrays.zeros(topology.busCount);
+  const noPaths = arrays.zeros(topology.laterals.tap.length);
+  const resistancesIn = ({ resistances: { values, hasPath } }: typeof solved.zero) => {
+    return { z: { re: values, im: zeros }, hasPath };
+  };
+  const reactancesIn = ({ reactances: { values, hasPath } }: typeof solved.zero) => {
+    return { z: { re: zeros, im: values }, hasPath };
+  };
+  const caseOf = (
+    networkIn: typeof resistancesIn,
+    pathOf: (path: ComplexArray) => ComplexArray,
+  ): TheveninCase => ({
+    topology,
+    openCircuit,
+    networks: {
+      positive: networkIn(solved.positive),
+      negative: networkIn(solved.negative),
+      zero: networkIn(solved.zero),
+    },
+    paths: { self: pathOf(paths.self), mutual: pathOf(paths.mutual) },
+  });
   return {
-    resistances: solveAlike(solved, models.resistances, spare),
-    reactances: solveAlike(solved, models.reactances, spare),
+    resistances: caseOf(resistancesIn, ({ re }) => ({ re, im: noPaths })),
+    reactances: caseOf(reactancesIn, ({ im }) => ({ re: noPaths, im })),
   };
 }
 
 /** Gives X/R by kind of fault at a node, by separate reduction; 0 where nothing feeds the node. */
 export function findSeparateXr(cases: SeparateCases, node: number): (kind: FaultKind) => number {
-  const resistances = findFaultPoint(cases.resistances, node);
-  const reactances = findFaultPoint(cases.reactances, node);
+  return compareSeparately(findFaultPoint(cases.resistances, node), findFaultPoint(cases.reactances, node));
+}
+
+/** The same from what the two networks are at the node. */
+export function compareSeparately(
+  resistances: FaultPoint | undefined,
+  reactances: FaultPoint | undefined,
+): (kind: FaultKind) => number {
   return (kind) => {
     if (!resistances || !reactances) return 0;
     const r = loopImpedances(resistances, kind);
@@ -95,12 +159,12 @@ function usualRatio({ kind, kva }: Machine, kv: number): number {
 }
 
 /** The model's machines, which come in the order of the study's, with a resistance each in all three sequences. */
-function completeResistances(study: Study, { machines, nodes }: Model): Shunt[] {
-  const given = Array.from(eachElement(study, 'machines'), ({ element }) => element);
-  return machines.map((shunt, index) => {
+function completeResistances(study: Study, model: Model): Shunt[] {
+  const { elements: given } = new ElementList(study, 'machines');
+  return model.machines.map((shunt, index): Shunt => {
     const machine = given[index]!;
     if (machine.rPu !== undefined || !shunt.z1) return shunt;
-    const r = { re: usualRatio(machine, nodes[shunt.node]!.kv) * shunt.z1.im, im: 0 };
+    const r = { re: usualRatio(machine, nodeAt(model, shunt.node).kv) * shunt.z1.im, im: 0 };
     return {
       ...shunt,
       z1: add(shunt.z1, r),

@@ -1,6 +1,6 @@
 import type { Database } from '../../db/connection.ts';
+import type { Compute } from '../../server/compute.ts';
 import type { Deps } from '../../server/context.ts';
-import type { Compute } from '../compute-client.ts';
 
 /** What a screening is handed; `now` is the clock, which the making of a demo sets back. */
 export interface ScreenDeps extends Pick<Deps, 'events' | 'log'> {

@@ -51,8 +51,12 @@ export async function plantApplications(base: Pick<Deps, 'db' | 'config' | 'log'
   const codes = (await findSetting(base.db, 'demo.equipment-codes')) as Record<string, string>;
   const waiting: number[] = [];
   const events = { publish: () => Promise.resolve(), subscribe: () => () => undefined };
-  const queue = { enqueue: (runId: number) => Promise.resolve(void waiting.push(runId)) };
-  const compute: ScreenDeps['compute'] = {
+  const queue = {
+    enqueue: (runId: number) => Promise.resolve(void waiting.push(runId)),
+    enqueueRoom: () => Promise.resolve(),
+  };
+  const compute: ScreenDeps['compute'] & Deps['compute'] = {
+    ask: () => Promise.reject(new Error('Nobody tries anything while the demo is planted')),
     study: (bytes, ruleSet, onStep) => Promise.resolve(computeStudy(bytes, ruleSet, onStep)),
   };
   async function screenWaiting(at: Date): Promise<void> {
@@ -62,7 +66,7 @@ export async function plantApplications(base: Pick<Deps, 'db' | 'config' | 'log'
       await screenRun(deps, runId);
   }
   const play: Play = {
-    deps: { ...base, queue, events },
+    deps: { ...base, queue, events, compute },
     publicIds: new Map(),
     publicIdOf: (code) => codes[code] ?? code,
     screenWaiting,

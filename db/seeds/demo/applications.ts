@@ -122,6 +122,8 @@ function utilityNeutralOf(windings: string, reactorOhm: number | undefined): Neu
 
 function makeConnection(scenario: Scenario, records: readonly DemoEquipment[]): ConnectionAnswers {
   const connection: ConnectionAnswers = { phases: phasesOf(records) };
+  // A house's panel; what has a transformer of its own has switchgear of its own.
+  if (connection.phases === 'one') connection.panelInterruptingKa = 10;
   if (scenario.transformer) {
     const [equipmentId, windings] = scenario.transformer;
     connection.transformer = {

@@ -32,7 +32,17 @@ function inverter(
     maker,
     model,
     phases: kv === onePhaseKv ? 'one' : 'three',
-    ratings: { kva, kw: kva, kv, faultCurrentPu, listed: certifiedUntil !== null },
+    ratings: {
+      ...{ kva, kw: kva, kv, faultCurrentPu, listed: certifiedUntil !== null },
+      ...(certifiedUntil === null
+        ? { trdPercent: 4.1 }
+        : {
+            category: 'III' as const,
+            settingsProfile: 'IEEE 1547-2018 defaults',
+            trdPercent: kva < 20 ? 3.2 : 2.4,
+            loadRejectionPercent: 119,
+          }),
+    },
     certifiedUntil,
   };
 }

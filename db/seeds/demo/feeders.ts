@@ -2,6 +2,7 @@ import type { Feeder, Switch } from '../../../shared/schemas/study.ts';
 import { countryCircuits } from './circuits.ts';
 import { makeBiogasPlant, makeInverters } from './generation.ts';
 import { at, toLngLat, type Point } from './plane.ts';
+import { describeSubstation, makeCapacitors, makeRegulators, makeServiceTransformers } from './apparatus.ts';
 import { makeRoads } from './roads.ts';
 import { makeDevices, makeLines, makeLoads, makeSections } from './spans.ts';
 import { stringCircuit, type StrungCircuit } from './stringing.ts';
@@ -65,10 +66,16 @@ function makeFeeder(substation: SubstationPlan, circuits: readonly StrungCircuit
   const lines = circuits.flatMap((circuit) => makeLines(circuit, bus));
   const built = circuits.map((circuit) => {
     const [devices, loads] = [makeDevices(circuit, substation), makeLoads(circuit)];
-    return { devices, loads, sections: makeSections(circuit, devices, loads) };
+    const inverters = makeInverters(circuit);
+    const services = makeServiceTransformers(circuit, loads, inverters);
+    return { devices, loads, inverters, services, sections: makeSections(circuit, devices, loads) };
   });
   return {
-    circuits: circuits.map(({ plan }) => ({ id: plan.code, lineType: 'four-wire' })),
+    circuits: circuits.map(({ plan }) => ({
+      id: plan.code,
+      lineType: 'four-wire',
+      subjectToRules: true,
+    })),
     nodes: [
       { id: grid, kv: highKv, phases: 'ABC', position: toLngLat([place[0], place[1] + 0.03], 6) },
       { id: bus, kv, phases: 'ABC', position: toLngLat(place, 6) },
@@ -86,10 +93,19 @@ function makeFeeder(substation: SubstationPlan, circuits: readonly StrungCircuit
     switches: makeTies(circuits),
     groundingBanks: [],
     machines: plants.flatMap((plant) => plant.machines),
-    inverters: circuits.flatMap(makeInverters),
+    inverters: built.flatMap((part) => part.inverters),
     loads: built.flatMap((part) => part.loads),
     devices: built.flatMap((part) => part.devices),
     sections: built.flatMap((part) => part.sections),
+    capacitors: circuits.flatMap(makeCapacitors),
+    regulators: circuits.flatMap(makeRegulators),
+    serviceTransformers: built.flatMap((part) => part.services),
+    substations: [
+      describeSubstation(
+        substation,
+        built.flatMap((part) => part.loads),
+      ),
+    ],
   };
 }
 
@@ -113,7 +129,7 @@ export function makeDemoModels(): DemoModel[] {
       frequencyHz: 60,
       baseMva: 10,
       prefaultFactor: { max: 1.05, min: 0.95 },
-      minimumFaultOhm: 40,
+      minimumFaultOhm: substation.minimumFaultOhm,
       feeder: makeFeeder(
         substation,
         circuits.filter(({ plan }) => plan.code.startsWith(substation.code)),

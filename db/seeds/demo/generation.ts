@@ -12,6 +12,15 @@ const connectedRoofs: Readonly<Record<string, readonly [threePhase: readonly num
   HC2: [[250, 100], 3],
 };
 
+const usualListing = {
+  standard: 'UL 1741',
+  category: 'III' as const,
+  profile: 'IEEE 1547-2018 defaults',
+  trdPercent: 2.5,
+  loadRejectionPercent: 118,
+  antiIslanding: true,
+};
+
 /** Inverters in service, listed, giving 1.1 to 1.2 times their rated current into a fault. */
 export function makeInverters({ plan, poles }: StrungCircuit): Inverter[] {
   const dice = makeDice(plan.seed + 3);
@@ -36,6 +45,8 @@ export function makeInverters({ plan, poles }: StrungCircuit): Inverter[] {
     tracking: false,
     storage: false,
     listed: true,
+    energy: 'photovoltaic' as const,
+    listing: { ...usualListing },
   }));
 }
 

@@ -1,5 +1,7 @@
-import type { Device, Impedance, Line, Load, Section } from '../../../shared/schemas/study.ts';
+import type { Device, Impedance, Line, Load } from '../../../shared/schemas/study.ts';
+import type { Section } from '../../../shared/schemas/study-utility.ts';
 import { at } from './plane.ts';
+import { makeFuseCurve, makeRelayCurves } from './protection.ts';
 import { makeDice } from './random.ts';
 import type { StrungCircuit } from './stringing.ts';
 import type { SubstationPlan } from './substations.ts';
@@ -19,7 +21,7 @@ const conductors: Record<'mainline' | 'branch' | 'lateral', Conductor> = {
 
 const round = (value: number, decimals: number) => Math.round(value * 10 ** decimals) / 10 ** decimals;
 
-function spanId(poleId: string): string {
+export function spanId(poleId: string): string {
   return poleId.replace('-', '-L');
 }
 
@@ -32,6 +34,7 @@ export function makeLines({ plan, poles }: StrungCircuit, busId: string): Line[]
     phases: pole.phases,
     km: round(pole.spanKm, 3),
     ...structuredClone(conductors[pole.carries]),
+    mainline: pole.carries === 'mainline',
     circuit: plan.code,
   }));
 }
@@ -73,6 +76,9 @@ export function makeDevices({ plan, poles }: StrungCircuit, substation: Substati
           ...here,
           kind: 'breaker',
           ...substation.breaker,
+          ...makeRelayCurves(substation.breaker, 'head'),
+          voltageSupervised: true,
+          directional: substation.directional,
           sectionalizing: true,
           deadTimeS: 2,
         },
@@ -82,7 +88,15 @@ export function makeDevices({ plan, poles }: StrungCircuit, substation: Substati
       const { oldReclosers } = substation;
       const isOld = oldReclosers?.ids.includes(pole.recloser) ?? false;
       const rating = isOld ? { interruptingKa: oldReclosers?.interruptingKa } : {};
-      const recloser = { id: pole.recloser, ...here, kind: 'recloser', ...substation.recloser, ...rating };
+      const settings = { ...makeRelayCurves(substation.recloser, 'line'), voltageSupervised: !isOld };
+      const recloser = {
+        id: pole.recloser,
+        ...here,
+        kind: 'recloser',
+        ...substation.recloser,
+        ...rating,
+        ...settings,
+      };
       return [{ ...recloser, sectionalizing: true, deadTimeS: 2 }];
     }
     if (!pole.isHead || !dice.chance(0.85)) return [];
@@ -93,10 +107,21 @@ export function makeDevices({ plan, poles }: StrungCircuit, substation: Substati
         ...here,
         kind: 'fuse',
         ...substation.fuse,
+        phaseCurve: makeFuseCurve(pole.phases.length === 1 ? 40 : 65),
         sectionalizing: false,
       },
     ];
   });
+}
+
+/** The largest load beyond a pole, over all that is beyond it. */
+function findLargestShare({ poles }: StrungCircuit, loads: readonly Load[], pole: number): number {
+  const isBeyond = new Set<string>();
+  poles.forEach(({ id, parent }, i) => {
+    if (i === pole || (parent !== null && isBeyond.has(at(poles, parent).id))) isBeyond.add(id);
+  });
+  const beyond = loads.filter(({ node }) => isBeyond.has(node)).map(({ kw }) => kw);
+  return beyond.length === 0 ? 0 : Math.max(...beyond) / beyond.reduce((sum, kw) => sum + kw, 0);
 }
 
 /** Sums of what hangs beyond each pole on its own circuit, itself included; parents always come before their children. */
@@ -133,6 +158,11 @@ export function makeSections(
         minimumKw: Math.round(minimumKw),
         daytimeFixedKw: Math.round(minimumKw * 1.42),
         daytimeTrackingKw: Math.round(minimumKw * 1.25),
+        minimumIs: 'gross',
+        groundedLoadShare: 0.9,
+        largestCustomerShare: round(findLargestShare(strung, loads, i), 3),
+        uniform: true,
+        transfers: false,
       };
     });
 }

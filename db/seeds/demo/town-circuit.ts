@@ -51,7 +51,7 @@ export function planTownCircuit(water: Water): CircuitPlan {
   return {
     code: 'MB1',
     spacingKm: 0.12,
-    peakKw: 3100,
+    peakKw: 2600,
     seed: 4161,
     side: 1,
     stretches: [

@@ -59,6 +59,12 @@ function listConnection({ connection }: Answers, records: readonly EquipmentView
   } else rows.push({ key: 'transformer', term: 'Transformer', value: 'None of its own' });
   if (machineNeutral)
     rows.push({ key: 'machine', term: 'Machine neutral', value: describeNeutral(machineNeutral) });
+  if (connection.panelInterruptingKa !== undefined)
+    rows.push({
+      key: 'panel',
+      term: 'Interrupting rating of the main panel',
+      value: `${formatNumber(connection.panelInterruptingKa)} kA`,
+    });
   return rows;
 }
 

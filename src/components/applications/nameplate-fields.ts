@@ -18,6 +18,20 @@ const rated: NameplateField[] = [
 const inverter: NameplateField[] = [
   ...rated,
   { key: 'faultCurrentPu', label: 'Fault current, times rated', unit: '×', hint: 'Commonly 1.1 to 1.2' },
+  {
+    key: 'trdPercent',
+    label: 'Total rated-current distortion, in percent',
+    unit: '%',
+    hint: 'From the equipment sheet',
+    optional: true,
+  },
+  {
+    key: 'loadRejectionPercent',
+    label: 'Highest voltage when the load is cut off, in percent',
+    unit: '%',
+    hint: 'From the load-rejection test, of nominal',
+    optional: true,
+  },
 ];
 
 const machine: NameplateField[] = [

@@ -5,6 +5,8 @@ import { stageWords, waitingWords } from '../../../shared/wording.ts';
 const otherActions: Record<string, string> = {
   take: 'Taken by a reviewer',
   'put-back': 'Put back',
+  'keep-trial': 'Trial kept',
+  'delete-trial': 'Kept trial deleted',
   'set-finding-aside': 'Finding set aside',
   'take-back-waiver': 'Finding counts again',
   'screen-again': 'Screened again',

@@ -6,17 +6,18 @@ interface Place {
 }
 
 const projects: Place = { label: 'My projects', to: '/projects' };
+const reports: Place = { label: 'Place reports', to: '/reports' };
 const desk: Place = { label: 'The desk', to: '/desk' };
 const models: Place = { label: 'Network models', to: '/models' };
 const settings: Place = { label: 'Settings', to: '/settings' };
 const mailbox: Place = { label: 'Mailbox', to: '/mailbox' };
 
 const placesByRole: Record<Role, readonly Place[]> = {
-  applicant: [projects],
-  reviewer: [desk, models],
-  planner: [desk, models],
-  administrator: [settings, desk, models],
-  auditor: [desk, models, settings],
+  applicant: [projects, reports],
+  reviewer: [desk, models, reports],
+  planner: [desk, models, reports],
+  administrator: [settings, desk, models, reports],
+  auditor: [desk, models, reports, settings],
 };
 
 /** Where a person of this role can go; the local mailbox exists in the demo only. */

@@ -4,6 +4,7 @@ import { lockApplication } from '../../../db/repositories/applications.ts';
 import type { Actor } from '../../../server/context.ts';
 import { findCurrentClock, listClockViews } from '../../../server/services/clocks.ts';
 import { moveApplication } from '../../../server/services/transitions.ts';
+import { proFormaRuleSet } from '../../../shared/rules/pro-forma.ts';
 import type { ApplicationEvent } from '../../../shared/rules/application-life.ts';
 import { makeTestDatabase, type TestDatabase } from '../../support/database.ts';
 import { getRow, handIn, makeContext } from '../../support/fixture-applications.ts';
@@ -43,6 +44,7 @@ describe('the clocks of an application', () => {
       {
         kind: 'completeness',
         label: 'Check for completeness',
+        unit: 'business-day',
         allowedDays: 10,
         usedDays: 2,
         startedOn: '2026-12-21',
@@ -116,5 +118,46 @@ describe('the clocks of an application', () => {
     const { views, nextDueOn } = await seeClocks(publicId, '2026-07-01');
     expect(views.map(({ state, usedDays }) => [state, usedDays])).toEqual([['stopped', 2]]);
     expect(nextDueOn).toBeNull();
+  });
+
+  it('take their days from the rules in force, counted by the calendar where these say so', async () => {
+    const days = { unit: 'calendar-day', source: 'A rule of ours', readOrMemory: 'read' } as const;
+    const clocks = { completeness: { ...days, allowedDays: 20 }, cure: { ...days, allowedDays: 7 } };
+    await test.db('rule_set_versions').insert({
+      code: 'by-calendar',
+      number: 1,
+      valid_from: '2026-09-01',
+      content: JSON.stringify({ ...proFormaRuleSet, code: 'by-calendar', clocks }),
+      sha256: Buffer.alloc(32),
+    });
+    // 4 September is a Friday; a weekend and Labor Day follow.
+    const { publicId } = await handIn(test.db, world, noon('2026-09-04'));
+    await move(publicId, 'ask-for-missing', world.people.reviewer, '2026-09-07');
+    const paused = await seeClocks(publicId, '2026-09-10');
+    expect(paused.views.map(({ unit, usedDays, allowedDays }) => [unit, usedDays, allowedDays])).toEqual([
+      ['calendar-day', 3, 20],
+      ['calendar-day', 3, 7],
+    ]);
+    expect(paused.nextDueOn).toBe('2026-09-14');
+    await move(publicId, 'resubmit', world.people.applicant, '2026-09-12');
+    // 20 days from 4 September end on the 24th; five of the applicant's on top.
+    expect((await seeClocks(publicId, '2026-09-13')).nextDueOn).toBe('2026-09-29');
+    await test.db('rule_set_versions').where({ code: 'by-calendar' }).delete();
+  });
+
+  it('fall back on the federal limits where the rules say nothing of them', async () => {
+    const { clocks: _clocks, ...early } = proFormaRuleSet;
+    await test.db('rule_set_versions').insert({
+      code: 'early',
+      number: 1,
+      valid_from: '2026-09-01',
+      content: JSON.stringify({ ...early, code: 'early' }),
+      sha256: Buffer.alloc(32),
+    });
+    const { publicId } = await handIn(test.db, world, noon('2026-09-04'));
+    expect((await seeClocks(publicId, '2026-09-04')).views).toMatchObject([
+      { kind: 'completeness', unit: 'business-day', allowedDays: 10 },
+    ]);
+    await test.db('rule_set_versions').where({ code: 'early' }).delete();
   });
 });

@@ -83,6 +83,30 @@ describe('composeStudy', () => {
     expect(feeder.lines).toHaveLength(6);
   });
 
+  it('marks what refers to the own elements alone: no service of the feeder, no node that has a name of another kind', async () => {
+    const project = {
+      ...machineProject(200),
+      capacitors: [{ id: 'n2', node: 'site', phases: 'ABC', kvar: 50, with: 'machine' }],
+      inverters: [
+        {
+          ...{ id: 'roof', node: 'n2', phases: 'ABC', kva: 5, faultCurrentPu: 1.2 },
+          service: { transformer: 'roof' },
+        },
+      ],
+    };
+    project.transformers![0]!.unitMachine = 'machine';
+    const ahead = await insertFixtureApplication(test.db, world, { project });
+    const { feeder } = await compose([ahead]);
+    const mark = `q-${ahead.number}/`;
+    expect(feeder.capacitors).toEqual([
+      { ...project.capacitors[0], id: `${mark}n2`, node: `${mark}site`, with: `${mark}machine` },
+    ]);
+    expect(feeder.inverters).toMatchObject([
+      { id: `${mark}roof`, node: 'n2', service: { transformer: 'roof' } },
+    ]);
+    expect(feeder.transformers?.at(-1)).toMatchObject({ unitMachine: `${mark}machine` });
+  });
+
   it('keeps the order of the queue, and takes two projects whose elements have the same ids', async () => {
     const { feeder } = await compose([second, first]);
     const ids = feeder.machines?.map((machine) => machine.id);

@@ -1,8 +1,11 @@
 import { describe, expect, it } from 'vitest';
 import {
   addBusinessDays,
+  addCalendarDays,
   countBusinessDays,
+  countCalendarDays,
   federalHolidays,
+  isLocalDate,
   localDate,
 } from '../../../shared/rules/business-days.ts';
 
@@ -75,5 +78,24 @@ describe('business days', () => {
     expect(() => addBusinessDays('2026-02-30', 1, holidays)).toThrow('got "2026-02-30"');
     expect(() => addBusinessDays('15 June 2026', 1, holidays)).toThrow('YYYY-MM-DD');
     expect(() => addBusinessDays('2026-06-15', 1.5, holidays)).toThrow('got 1.5');
+  });
+});
+
+describe('calendar days', () => {
+  it('are counted through weekends, holidays and the end of the year', () => {
+    expect(addCalendarDays('2026-12-24', 8)).toBe('2027-01-01');
+    expect(countCalendarDays('2026-12-24', '2027-01-01')).toBe(8);
+    expect(countCalendarDays('2027-01-01', '2026-12-24')).toBe(0);
+    // Daylight saving time begins on 8 March 2026: that day is a day like others.
+    expect(countCalendarDays('2026-03-07', '2026-03-09')).toBe(2);
+  });
+
+  it('are days that the calendar has', () => {
+    expect(['2028-02-29', '2026-02-29', '2026-2-9', 'soon'].map(isLocalDate)).toEqual([
+      true,
+      false,
+      false,
+      false,
+    ]);
   });
 });

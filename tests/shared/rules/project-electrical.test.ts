@@ -34,7 +34,11 @@ describe('the project of a study file', () => {
           },
         ],
         inverters: [
-          { id: 'unit-1', node: 'site-lv', phases: 'ABC', kva: 1000, faultCurrentPu: 1.2, listed: true },
+          {
+            ...{ id: 'unit-1', node: 'site-lv', phases: 'ABC', kva: 1000, faultCurrentPu: 1.2, listed: true },
+            energy: 'photovoltaic',
+            listing: { standard: 'IEEE 1547', antiIslanding: true },
+          },
         ],
       },
       sizeKw: 1000,
@@ -102,7 +106,14 @@ describe('the project of a study file', () => {
     expect(project).toEqual({
       id: 'FX-4',
       node: 'n4',
-      inverters: [{ id: 'unit-1', node: 'n4', phases: 'B', kva: 8, faultCurrentPu: 1.2, listed: true }],
+      inverters: [
+        {
+          ...{ id: 'unit-1', node: 'n4', phases: 'B', kva: 8, faultCurrentPu: 1.2, listed: true },
+          ratedKv: 0.416,
+          energy: 'photovoltaic',
+          listing: { standard: 'IEEE 1547', antiIslanding: true },
+        },
+      ],
     });
   });
 

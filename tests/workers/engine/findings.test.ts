@@ -1,8 +1,8 @@
 import { describe, expect, it } from 'vitest';
 import { proFormaRuleSet } from '../../../shared/rules/pro-forma.ts';
-import type { AskedQuestionId, Finding } from '../../../shared/schemas/findings.ts';
-import { askedQuestions, questionsNotAskedYet } from '../../../shared/schemas/findings.ts';
-import type { RuleSet } from '../../../shared/schemas/rule-sets.ts';
+import type { Finding, QuestionId } from '../../../shared/schemas/findings.ts';
+import type { Rule, RuleSet } from '../../../shared/schemas/rule-sets.ts';
+import { listAsked, listNotAsked } from '../../../shared/schemas/rule-sets.ts';
 import type { Study } from '../../../shared/schemas/study.ts';
 import { runStudy } from '../../../workers/engine/run-study.ts';
 import { checkedStudy, readCase } from './cases.ts';
@@ -16,11 +16,11 @@ function changed(change: (study: Study) => void): Study {
   return checkedStudy(study);
 }
 
-function answersOf(study: Study, id: AskedQuestionId, ruleSet: RuleSet = proFormaRuleSet): Finding[] {
+function answersOf(study: Study, id: QuestionId, ruleSet: RuleSet = proFormaRuleSet): Finding[] {
   return runStudy(study, ruleSet).findings.filter((finding) => finding.id === id);
 }
 
-const rulesWith = (id: AskedQuestionId, rule: Partial<RuleSet['rules'][AskedQuestionId]>): RuleSet => ({
+const rulesWith = (id: keyof typeof proFormaRuleSet.rules, rule: Partial<Rule>): RuleSet => ({
   ...proFormaRuleSet,
   rules: { ...proFormaRuleSet.rules, [id]: { ...proFormaRuleSet.rules[id], ...rule } },
 });
@@ -28,8 +28,8 @@ const rulesWith = (id: AskedQuestionId, rule: Partial<RuleSet['rules'][AskedQues
 describe('Findings', () => {
   it('answer every question that is asked, and none of those that are not', () => {
     const answered = new Set(runStudy(marrowLane, proFormaRuleSet).findings.map(({ id }) => id));
-    expect([...answered]).toEqual(askedQuestions.map(({ id }) => id));
-    for (const { id } of questionsNotAskedYet) expect(answered).not.toContain(id);
+    expect([...answered]).toEqual(listAsked(proFormaRuleSet).map(({ id }) => id));
+    for (const { id } of listNotAsked(proFormaRuleSet)) expect(answered).not.toContain(id);
   });
 
   it('cite the limit, the comparison and the clause of the rule set', () => {
@@ -154,7 +154,7 @@ describe('Effective grounding', () => {
     });
     const [finding] = answersOf(study, 'effective-grounding');
     expect(finding).toMatchObject({ verdict: 'not-applicable', consequence: 'none' });
-    expect(finding!.note).toContain('not asked yet');
+    expect(finding!.note).toContain('a question of its own');
   });
 
   it('needs data where no device is known that could cut the project off', () => {

@@ -1,12 +1,14 @@
 import type { CurrentSource } from '../case.ts';
 import { isMember, isPresent } from '../case.ts';
-import type { Complex } from '../complex.ts';
+import type { Complex, ComplexArray } from '../complex.ts';
 import { at, complexArray, magnitude, multiply } from '../complex.ts';
 import { sequencesOf } from '../open-circuit.ts';
 import { solveVoltages } from '../sequence-networks.ts';
 import type { SolvedCase } from '../solve-case.ts';
 import { busOfNode } from '../solve-case.ts';
 import { transferColumn } from '../transfers.ts';
+import type { Arrays } from '../work-arrays.ts';
+import { withWorkArrays } from '../work-arrays.ts';
 
 /*
  * Inverter currents added in magnitude, each scaled by |Zkm/Zkk|, as IEC 60909-0:2016 adds those of full-converter
@@ -18,11 +20,20 @@ import { transferColumn } from '../transfers.ts';
  * inverters, over E. Every fault current there is at most 1 + this times what it is without inverters.
  */
 export function findInverterRaise(solved: SolvedCase, node: number): number {
-  const { choice, networks, topology, paths } = solved;
-  const bus = busOfNode(solved, node);
   const taking = listTakingPart(solved);
-  if (bus === -1 || !networks.positive.hasPath[bus] || taking.length === 0) return 0;
-  const columns = transferColumns(solved, bus);
+  const bus = busOfNode(solved, node);
+  if (bus === -1 || !solved.networks.positive.hasPath[bus] || taking.length === 0) return 0;
+  return withWorkArrays((arrays) => addUpRaise(solved, node, taking, transferColumns(solved, bus, arrays)));
+}
+
+function addUpRaise(
+  solved: SolvedCase,
+  node: number,
+  taking: readonly CurrentSource[],
+  columns: readonly ComplexArray[],
+): number {
+  const { choice, topology, paths } = solved;
+  const bus = busOfNode(solved, node);
   const spot = topology.laterals.spotOf[node]!;
   let raise = 0;
   for (const inverter of taking) {
@@ -46,6 +57,7 @@ export function findInverterRaise(solved: SolvedCase, node: number): number {
 export function boundInverterRaise(solved: SolvedCase): (node: number) => number {
   const { choice, networks, topology, paths } = solved;
   const taking = listTakingPart(solved);
+  if (taking.length === 0) return () => 0;
   const sums = [networks.positive, networks.negative, networks.zero].map((network, sequence) => {
     const values = complexArray(topology.busCount);
     for (const inverter of taking) {
@@ -78,11 +90,11 @@ function listTakingPart({ model, choice, topology }: SolvedCase): CurrentSource[
 }
 
 /** Columns of Z1, Z2 and Z0 at a bus; the last two only where unbalanced inverters need them. */
-function transferColumns({ networks, openCircuit }: SolvedCase, bus: number) {
+function transferColumns({ networks, openCircuit }: SolvedCase, bus: number, arrays: Arrays) {
   const wanted = openCircuit.balanced
     ? [networks.positive]
     : [networks.positive, networks.negative, networks.zero];
-  return wanted.map((network) => transferColumn(network, bus));
+  return wanted.map((network) => transferColumn(network, bus, arrays));
 }
 
 function largestOf(currents: readonly Complex[]): number {

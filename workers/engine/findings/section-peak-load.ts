@@ -1,73 +1,51 @@
-import type { Finding } from '../../../shared/schemas/findings.ts';
-import type { Section } from '../../../shared/schemas/study.ts';
+import { Working } from '../working.ts';
+import { describeAggregate, explainAggregate, kilowatts, sumAggregate } from './aggregates.ts';
+import { askSections } from './ask-sections.ts';
+import type { Generator } from './island-generation.ts';
+import type { Answered } from './judge.ts';
 import { answer, judge } from './judge.ts';
+import type { NestedSection } from './nested-sections.ts';
+import { describeDeciding } from './operating-cases.ts';
 import type { Screening } from './screening.ts';
-import { findCutOff } from './upstream.ts';
+
+const question = 'section-peak-load';
 
 /**
- * Is all generation small against the peak load of each line section?
+ * Is all generation small against the peak load of each line section? (SGIP 2.2.1.2.)
  * For every section that the point of interconnection lies in, all generation beyond its device over its peak load; the
- * worst decides, and each section without a known peak is a finding of its own.
+ * worst of all sections and operating cases decides, and each section without a known peak is a finding of its own.
  */
-export function answerSectionPeakLoad(screening: Screening): Finding[] {
-  const { study, upstream, model } = screening;
-  const deviceOf = new Map((study.feeder.devices ?? []).map((device) => [device.id, device]));
-  const onPath = new Set(upstream.branches);
-  const findings = (study.feeder.sections ?? []).flatMap((section) => {
-    const branch = model.branchIndex.get(deviceOf.get(section.device)!.branch)!;
-    return onPath.has(branch) ? [judgeSection(screening, section, branch)] : [];
-  });
-  if (findings.length === 0) {
-    const note =
-      'No line section with a known device lies between the source and the point of interconnection.';
-    return [answer(screening, 'section-peak-load', 'needs-data', { note })];
-  }
-  const measured = findings.filter((finding) => finding.value !== null).sort((p, q) => q.value! - p.value!);
-  return [...measured.slice(0, 1), ...findings.filter((finding) => finding.value === null)];
+export function answerSectionPeakLoad(screening: Screening): Answered[] {
+  return askSections(screening, question, (nested, generators) =>
+    judgeSection(screening, nested, generators),
+  );
 }
 
-function judgeSection(screening: Screening, section: Section, branch: number): Finding {
-  const element = section.id;
-  const cutOff = findCutOff(screening.upstream, screening.poi, branch);
-  if (!cutOff) {
-    const note = 'The section has another way to a source, so its device does not bound it.';
-    // A closed tie is no gap in the records: whatever the rule says of a peak that is not known, this takes a study.
-    return {
-      ...answer(screening, 'section-peak-load', 'needs-data', { element, note }),
-      consequence: 'study',
-    };
+function judgeSection(
+  screening: Screening,
+  { section, operating }: NestedSection,
+  generators: readonly Generator[],
+): Answered {
+  const { id: element, device, peakKw } = section;
+  if (!peakKw) {
+    return answer(screening, question, 'needs-data', { element, note: 'Its peak load is not known.' });
   }
-  if (!section.peakKw) {
-    return answer(screening, 'section-peak-load', 'needs-data', {
-      element,
-      note: 'Its peak load is not known.',
-    });
-  }
-  const connected = sumGeneration(screening, cutOff, 'feeder');
-  const proposed = sumGeneration(screening, cutOff, 'project');
-  return judge(screening, 'section-peak-load', {
+  const aggregate = sumAggregate(screening, question, generators);
+  const working = new Working();
+  const total = explainAggregate(working, aggregate, ` beyond ${device}`);
+  const peak = working.given('P_peak', `Peak load of section ${element}`, peakKw, 'kW');
+  const share = { symbol: 's', words: 'Generation over peak load', unit: '%' };
+  const value = (aggregate.totalKw * 100) / peakKw;
+  working.compute(share, 'P * 100 / P_peak', [total, peak], value);
+  const notes = [
+    `${describeAggregate(aggregate)}, against a peak of ${kilowatts(peakKw)}.`,
+    ...describeDeciding(screening.cases, operating),
+  ];
+  return judge(screening, question, {
     element,
-    value: ((connected + proposed) / section.peakKw) * 100,
-    before: (connected / section.peakKw) * 100,
-    note: `${kilowatts(connected)} connected or ahead and ${kilowatts(proposed)} of the project, against a peak of ${kilowatts(section.peakKw)}.`,
+    value,
+    before: (aggregate.connectedKw * 100) / peakKw,
+    note: notes.join(' '),
+    working: working.steps,
   });
-}
-
-/** Total size of the generators in an area, on the rule set's basis. */
-function sumGeneration(
-  { study, project, model, ruleSet }: Screening,
-  area: Uint8Array,
-  of: 'feeder' | 'project',
-): number {
-  const { machines = [], inverters = [] } = of === 'feeder' ? study.feeder : project;
-  const basis = ruleSet.rules['section-peak-load'].sizeBasis;
-  let total = 0;
-  for (const { node, kva, exportKw } of [...machines, ...inverters]) {
-    if (area[model.nodeIndex.get(node)!]) total += basis === 'export' ? (exportKw ?? kva) : kva;
-  }
-  return total;
-}
-
-function kilowatts(size: number): string {
-  return `${Number(size.toFixed(1))} kW`;
 }

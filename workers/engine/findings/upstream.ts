@@ -3,6 +3,10 @@ import type { CaseChoice, Model, Opening } from '../case.ts';
 import { isClosed, isInService, isPresent } from '../case.ts';
 import type { Graph } from '../graph.ts';
 import { buildGraph } from '../graph.ts';
+import { listEdges, listPresentNodes } from '../joined-nodes.ts';
+import { nodeAt } from '../model-parts.ts';
+import { wiringOf } from '../wiring.ts';
+import { newArrays } from '../work-arrays.ts';
 
 /* The way from the sources to the point of interconnection, and what lies beyond a device on it. */
 
@@ -13,33 +17,24 @@ export type Upstream = {
   /** The branches along the path, by index in the model. */
   readonly branches: readonly number[];
   /** By edge of the graph: the branch it is, -1 for a closed switch. */
-  readonly branchOfEdge: readonly number[];
+  readonly branchOfEdge: Int32Array;
   readonly isSource: Uint8Array;
 };
 
 /** Finds the way from a node to the nearest source; the path is the node alone where there is none. */
 export function traceUpstream(model: Model, choice: CaseChoice, node: number): Upstream {
-  const from: number[] = [];
-  const to: number[] = [];
-  const branchOfEdge: number[] = [];
-  model.branches.forEach((branch, index) => {
-    if (!isInService(model, choice, branch)) return;
-    from.push(branch.from);
-    to.push(branch.to);
-    branchOfEdge.push(index);
-  });
-  for (const link of model.switches) {
-    if (!isClosed(choice, link) || !isInService(model, choice, link)) continue;
-    from.push(link.from);
-    to.push(link.to);
-    branchOfEdge.push(-1);
-  }
-  const graph = buildGraph(model.nodes.length, from, to);
-  const isSource = new Uint8Array(model.nodes.length);
+  const links = model.switches
+    .filter((link) => isClosed(choice, link) && isInService(model, choice, link))
+    .map((link): [number, number] => [link.from, link.to]);
+  const { from, to } = listEdges(model, choice, listPresentNodes(model, choice, newArrays), links, newArrays);
+  const branchOfEdge = from.map((_, edge) => (edge < from.length - links.length ? edge : -1));
+  const count = wiringOf(model).nodeFlags.length;
+  const graph = buildGraph(count, from, to);
+  const isSource = new Uint8Array(count);
   for (const { max } of model.sources) if (isPresent(choice, max)) isSource[max.node] = 1;
 
-  const cameFrom = new Int32Array(model.nodes.length).fill(-1);
-  const cameBy = new Int32Array(model.nodes.length).fill(-1);
+  const cameFrom = new Int32Array(count).fill(-1);
+  const cameBy = new Int32Array(count).fill(-1);
   const queue: number[] = [];
   isSource.forEach((yes, index) => yes && queue.push(index));
   for (let head = 0; head < queue.length; head++) {
@@ -145,7 +140,7 @@ export function listSectionalizing(
     .sort((p, q) => q.place - p.place);
 }
 
-function isSectionalizing(device: Device): boolean {
+export function isSectionalizing(device: Device): boolean {
   return device.sectionalizing ?? (device.kind === 'breaker' || device.kind === 'recloser');
 }
 
@@ -154,16 +149,16 @@ function isSectionalizing(device: Device): boolean {
  * there, as far as it goes.
  */
 export function findServedArea({ graph, branchOfEdge }: Upstream, model: Model, node: number): Uint8Array {
-  const area = new Uint8Array(model.nodes.length);
+  const area = new Uint8Array(graph.start.length - 1);
   area[node] = 1;
-  const kvAtNode = model.nodes[node]!.kv;
+  const kvAtNode = nodeAt(model, node).kv;
   const queue = [node];
   for (let head = 0; head < queue.length; head++) {
     const u = queue[head]!;
     for (let p = graph.start[u]!; p < graph.start[u + 1]!; p++) {
       const v = graph.neighbour[p]!;
       const isSwitch = branchOfEdge[graph.edge[p]!] === -1;
-      if (area[v] || !(isSwitch || model.nodes[v]!.kv < kvAtNode)) continue;
+      if (area[v] || !(isSwitch || nodeAt(model, v).kv < kvAtNode)) continue;
       area[v] = 1;
       queue.push(v);
     }

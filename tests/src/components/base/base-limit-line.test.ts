@@ -2,7 +2,7 @@
 import { mount } from '@vue/test-utils';
 import { describe, expect, it } from 'vitest';
 import BaseLimitLine from '../../../../src/components/base/BaseLimitLine.vue';
-import { drawLimitLine } from '../../../../src/components/base/limit-line.ts';
+import { drawLimitLine } from '../../../../shared/drawings/limit-line.ts';
 
 const given = { value: 92.3, before: 81.2, limit: 87.5, comparison: '<=', unit: '%' } as const;
 

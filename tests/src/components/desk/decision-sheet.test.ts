@@ -12,7 +12,7 @@ import type { SessionView } from '../../../../shared/schemas/sessions.ts';
 import { makeFindings } from '../../../support/fixture-applications.ts';
 
 /** The sheet as a reviewer sees it, with an official run that found what is given. */
-function mountSheet(findings: RunView['findings']) {
+function mountSheet(findings: RunView['findings'], terms: RunView['terms'] = {}) {
   const pinia = createPinia();
   const run = {
     publicId: 'run',
@@ -20,9 +20,11 @@ function mountSheet(findings: RunView['findings']) {
     state: 'finished',
     findings,
     waivers: [],
+    terms,
     notAskedYet: [],
   };
-  const application = { publicId: 'one', allowed: ['approve', 'deny'], decision: null, run };
+  const stage = 'initial-review';
+  const application = { publicId: 'one', stage, allowed: ['approve', 'deny'], decision: null, run };
   useSessionStore(pinia).session = { user: { publicId: 'mira', role: 'reviewer' } } as SessionView;
   return mount(DecisionSheet, {
     props: { application: application as unknown as ApplicationView, review: {} as Review },
@@ -48,4 +50,22 @@ it('two open findings of one question are told apart by their element', () => {
         `Does everything that interrupts faults keep its margin? At ${element}: Needs data: Its interrupting rating is not known.`,
     ),
   );
+});
+
+it('an open supplemental question is shown in the initial review, and said not to stand against an approval', () => {
+  const open = makeFindings().map((finding) =>
+    finding.id === 'minimum-load' || finding.id === 'contribution'
+      ? { ...finding, verdict: 'outside' as const, value: 900 }
+      : finding,
+  );
+  const setAside = { roles: ['reviewer' as const], secondPerson: false };
+  const sheet = mountSheet(open, {
+    'minimum-load': { stage: 'supplemental-review', setAside },
+    contribution: { stage: 'initial-review', setAside },
+  });
+  expect(sheet.text()).toContain('1 finding stands open.');
+  const later = sheet.get('[data-later]').text();
+  expect(later).toContain('1 open finding belongs to the supplemental review');
+  expect(later).toContain('minimum load');
+  expect(later).not.toContain('fault current');
 });

@@ -1,0 +1,54 @@
+import { Type } from '@sinclair/typebox';
+import { PreApplicationRequest } from '../../shared/schemas/pre-application-reports.ts';
+import { limitSnaps } from '../middleware/rate-limits.ts';
+import { route } from '../route-definition.ts';
+import {
+  getPreApplicationReport,
+  listReports,
+  printPreApplicationReport,
+  requestPreApplicationReport,
+} from '../services/pre-application-reports.ts';
+
+const Paper = Type.Object(
+  { paper: Type.Union([Type.Literal('a4'), Type.Literal('letter')], { default: 'a4' }) },
+  { additionalProperties: false },
+);
+
+export const preApplicationReportRoutes = [
+  route({
+    method: 'get',
+    path: '/pre-application-reports',
+    action: 'reports.list',
+    handle: ({ deps, context }) => listReports(deps, context),
+  }),
+  route({
+    method: 'post',
+    path: '/pre-application-reports',
+    action: 'reports.request',
+    // Each answer tells of a place on the network.
+    before: () => [limitSnaps()],
+    body: PreApplicationRequest,
+    status: 201,
+    handle: ({ deps, context, body }) => requestPreApplicationReport(deps, context, body),
+  }),
+  route({
+    method: 'get',
+    path: '/pre-application-reports/:id',
+    action: 'report.read',
+    handle: ({ deps, params }) => getPreApplicationReport(deps, params.id),
+  }),
+  route({
+    method: 'get',
+    path: '/pre-application-reports/:id/pdf',
+    action: 'report.read',
+    query: Paper,
+    handle: async ({ deps, params, query, response }) => {
+      const { name, bytes } = await printPreApplicationReport(deps, params.id, query.paper);
+      response
+        .type('application/pdf')
+        .set('content-disposition', `attachment; filename="${name}"`)
+        .set('cache-control', 'private, no-store')
+        .send(Buffer.from(bytes));
+    },
+  }),
+];
