@@ -24,20 +24,19 @@ const comparisonWords: Record<Comparison, string> = {
 const decimalsOf: Readonly<Record<string, number>> = { A: 0, kW: 0, kVA: 0, '': 2, pu: 3 };
 
 /** Amperes and kilowatts are whole, percent have at least one decimal, ratios two, voltages over nominal three. */
-function fewestDecimals(unit: string): number {
+export function fewestDecimals(unit: string): number {
   return decimalsOf[unit] ?? 1;
 }
 
 /** A question without numbers is answered from a table: yes or no. */
 function isYesOrNo(finding: Finding): boolean {
-  return finding.value === null && finding.limit === null && /^(within|outside)$/.test(finding.verdict);
+  return finding.value === null && /^(within|outside)$/.test(finding.verdict);
 }
 
 function describeLimit(finding: Finding, decimals: number): string {
-  if (finding.limit !== null) {
-    return `${comparisonWords[finding.comparison]} ${formatQuantity(finding.limit, finding.unit, decimals)}`;
-  }
-  return isYesOrNo(finding) ? 'Yes' : 'No limit set';
+  if (isYesOrNo(finding)) return 'Yes';
+  if (finding.limit === null) return 'No limit set';
+  return `${comparisonWords[finding.comparison]} ${formatQuantity(finding.limit, finding.unit, decimals)}`;
 }
 
 function describeAnswer(finding: Finding, value: string, limit: string): string {

@@ -1,5 +1,6 @@
 import type { Drawing } from './drawings/drawing.ts';
 import type { PrintedStep } from './quantity-words.ts';
+import type { Tone } from './wording.ts';
 
 /* What a working sheet is made of once it has words: the page, the PDF and the HTML file each lay out these and no others. */
 
@@ -13,10 +14,11 @@ export type SheetTableBlock = {
 export type SheetBlock =
   | { kind: 'words'; text: string }
   | { kind: 'caution'; text: string }
-  | { kind: 'heading'; text: string; id: string; note?: string }
+  /** `tone` is the note’s, where that is a verdict; what stands under one that folds is folded away on the screen. */
+  | { kind: 'heading'; text: string; id: string; note?: string; tone?: Tone; folds?: boolean }
   | { kind: 'facts'; facts: { term: string; value: string; isFigure?: boolean }[] }
   | SheetTableBlock
-  | { kind: 'steps'; caption: string; steps: PrintedStep[] }
+  | { kind: 'steps'; caption: string; steps: PrintedStep[]; folds?: boolean }
   /** With its numbers as a table, unless they stand beside it anyway. */
   | { kind: 'drawing'; drawing: Drawing; isTold?: boolean }
   /** Where the engineer in charge signs. */

@@ -3,6 +3,7 @@ import { describeFinding } from './finding-words.ts';
 import { printStep } from './quantity-words.ts';
 import type { SheetFinding } from './schemas/sheets.ts';
 import type { SheetBlock } from './sheet-blocks.ts';
+import { verdictWords } from './wording.ts';
 
 /** Where the working of a finding stands on its sheet: `element` and question together are one of a kind. */
 export function findingAnchor({ id, element }: { id: string; element?: string }): string {
@@ -20,6 +21,8 @@ export function layOutFinding({ finding, working }: SheetFinding): SheetBlock[] 
       text: finding.question,
       id: findingAnchor(finding),
       note: `${words.verdict}${finding.element === undefined ? '' : `, at ${finding.element}`}`,
+      tone: verdictWords[finding.verdict].tone,
+      folds: finding.verdict === 'within' || finding.verdict === 'not-applicable',
     },
   ];
   if (drawing) blocks.push({ kind: 'drawing', drawing, isTold: true });

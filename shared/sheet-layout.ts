@@ -88,7 +88,12 @@ function layOutElements({ elements }: Sheet): SheetSection {
         kind: 'words',
         text: 'Index 1 is of the positive sequence, and of lines and windings in the negative too; 2 of the negative, 0 of the zero sequence. The number after it tells elements apart.',
       },
-      { kind: 'steps', caption: 'Impedances of the elements', steps: elements.map(printStep) },
+      {
+        kind: 'steps',
+        caption: 'Impedances of the elements',
+        steps: elements.map(printStep),
+        folds: elements.length > 12,
+      },
     ],
   };
 }
@@ -185,7 +190,9 @@ function layOutCoordination({ coordination }: Sheet): SheetSection[] {
         { kind: 'caution', text: coordination.caution },
         ...drawings.map((drawing): SheetBlock => ({ kind: 'drawing', drawing })),
         ...pairs,
-        ...(steps.length > 0 ? [{ kind: 'steps' as const, caption: 'Tripping times', steps }] : []),
+        ...(steps.length > 0
+          ? [{ kind: 'steps' as const, caption: 'Tripping times', steps, folds: true }]
+          : []),
       ],
     },
   ];

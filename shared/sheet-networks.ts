@@ -48,7 +48,7 @@ export function layOutNetworks({ networks, poi }: Sheet): SheetSection {
       ]),
     },
   ];
-  for (const network of networks) blocks.push(...layOutNetwork(network));
+  for (const network of networks) blocks.push(...layOutNetwork(network, isLastWord(network, networks)));
   return { id: 'networks', title: 'The three sequence networks', blocks };
 }
 
@@ -56,7 +56,14 @@ function findNetwork(networks: readonly SheetNetwork[], state: SheetState, seque
   return networks.find((each) => each.state === state && each.sequence === sequence);
 }
 
-function layOutNetwork({ state, sequence, z, sameAs, isAddedUp, steps }: SheetNetwork): SheetBlock[] {
+/** Whether the state with the project is this one, or is the same as this one: the others are folded away on the screen. */
+function isLastWord({ state, sequence }: SheetNetwork, networks: readonly SheetNetwork[]): boolean {
+  const after = findNetwork(networks, 'after', sequence);
+  return state === 'after' || after?.sameAs?.state === state;
+}
+
+function layOutNetwork(network: SheetNetwork, isOpen: boolean): SheetBlock[] {
+  const { state, sequence, z, sameAs, isAddedUp, steps } = network;
   const title = `${sequence[0]!.toUpperCase()}${sequence.slice(1)} sequence, ${stateWords[state]}`;
   if (z === null) return [{ kind: 'words', text: `${title}: open, nothing ties this network to ground.` }];
   if (sameAs) {
@@ -66,7 +73,7 @@ function layOutNetwork({ state, sequence, z, sameAs, isAddedUp, steps }: SheetNe
   const caution = `${title}: the network has loops and is reduced by elimination; its result is given.`;
   return [
     ...(isAddedUp ? [] : [{ kind: 'words' as const, text: caution }]),
-    { kind: 'steps', caption: title, steps: steps.map(printStep) },
+    { kind: 'steps', caption: title, steps: steps.map(printStep), folds: !isOpen },
   ];
 }
 
@@ -98,12 +105,13 @@ export function layOutFaults({ faults, networks, poi }: Sheet): SheetSection {
     blocks.push({ kind: 'heading', text: faultWords[kind], id: `fault-${kind}` });
     const drawing = drawSequenceNetworks(kind, reduced, poi.phases !== 'ABC');
     if (drawing) blocks.push({ kind: 'drawing', drawing });
-    blocks.push(...own.map((each) => layOutFault(each)));
+    const lastWord = own.find(({ state }) => state === 'after')?.sameAs ?? 'after';
+    blocks.push(...own.map((each) => layOutFault(each, each.state === lastWord)));
   }
   return { id: 'faults', title: 'Faults at the point of interconnection', blocks };
 }
 
-function layOutFault({ kind, state, amps, sameAs, steps }: SheetFault): SheetBlock {
+function layOutFault({ kind, state, amps, sameAs, steps }: SheetFault, isOpen: boolean): SheetBlock {
   if (sameAs) {
     const text = `${faultWords[kind]}, ${stateWords[state]}: the same steps as ${stateWords[sameAs]}, ${formatQuantity(amps, 'A', 1)}.`;
     return { kind: 'words', text };
@@ -112,5 +120,6 @@ function layOutFault({ kind, state, amps, sameAs, steps }: SheetFault): SheetBlo
     kind: 'steps',
     caption: `${faultWords[kind]}, ${stateWords[state]}`,
     steps: steps.map(printStep),
+    folds: !isOpen,
   };
 }

@@ -1,18 +1,13 @@
-import { Type } from '@sinclair/typebox';
 import { PreApplicationRequest } from '../../shared/schemas/pre-application-reports.ts';
 import { limitSnaps } from '../middleware/rate-limits.ts';
 import { route } from '../route-definition.ts';
+import { PaperQuery, sendPdf } from '../send-pdf.ts';
 import {
   getPreApplicationReport,
   listReports,
   printPreApplicationReport,
   requestPreApplicationReport,
 } from '../services/pre-application-reports.ts';
-
-const Paper = Type.Object(
-  { paper: Type.Union([Type.Literal('a4'), Type.Literal('letter')], { default: 'a4' }) },
-  { additionalProperties: false },
-);
 
 export const preApplicationReportRoutes = [
   route({
@@ -41,14 +36,8 @@ export const preApplicationReportRoutes = [
     method: 'get',
     path: '/pre-application-reports/:id/pdf',
     action: 'report.read',
-    query: Paper,
-    handle: async ({ deps, params, query, response }) => {
-      const { name, bytes } = await printPreApplicationReport(deps, params.id, query.paper);
-      response
-        .type('application/pdf')
-        .set('content-disposition', `attachment; filename="${name}"`)
-        .set('cache-control', 'private, no-store')
-        .send(Buffer.from(bytes));
-    },
+    query: PaperQuery,
+    handle: async ({ deps, params, query, response }) =>
+      sendPdf(response, await printPreApplicationReport(deps, params.id, query.paper)),
   }),
 ];

@@ -1,11 +1,6 @@
-import { Type } from '@sinclair/typebox';
 import { route } from '../route-definition.ts';
+import { PaperQuery, sendPdf } from '../send-pdf.ts';
 import { getSheet, printSheet } from '../services/sheets.ts';
-
-const Paper = Type.Object(
-  { paper: Type.Union([Type.Literal('a4'), Type.Literal('letter')], { default: 'letter' }) },
-  { additionalProperties: false },
-);
 
 export const sheetRoutes = [
   route({
@@ -18,14 +13,8 @@ export const sheetRoutes = [
     method: 'get',
     path: '/runs/:id/sheet.pdf',
     action: 'run.download',
-    query: Paper,
-    handle: async ({ deps, params, query, response }) => {
-      const { name, bytes } = await printSheet(deps, params.id, query.paper);
-      response
-        .type('application/pdf')
-        .set('content-disposition', `attachment; filename="${name}"`)
-        .set('cache-control', 'private, no-store')
-        .send(Buffer.from(bytes));
-    },
+    query: PaperQuery,
+    handle: async ({ deps, params, query, response }) =>
+      sendPdf(response, await printSheet(deps, params.id, query.paper)),
   }),
 ];

@@ -59,7 +59,26 @@ const lackWords: Record<QuestionId, string> = {
   'short-circuit-ratio': 'The utility’s records of this feeder lack a source for this place.',
 };
 
-function sayLack({ id, verdict }: Finding): Pick<Finding, 'note'> {
+/** Why an answer without a number is no, in words that hold for every reason the engine may have had. */
+const refusalWords: Partial<Record<QuestionId, string>> = {
+  jurisdiction: 'These rules do not apply to the system at this place.',
+  'spot-network': 'The place is on a network of several transformers, which takes a study.',
+  'transformer-connection':
+    'The windings of the project, or the way it is grounded, do not suit the type of line here.',
+  'no-construction': 'Other answers call for work on the utility’s system.',
+  'voltage-quality': 'An answer about steady voltage, its changes or harmonics is outside its limit.',
+  'safety-reliability': 'Something about the line section here calls for the study process.',
+  islanding: 'Generation here can hold voltage without the utility, which takes a study at any size.',
+  reclosing: 'A device on the way may close again before generation has surely stopped.',
+  'reverse-flow': 'Power would flow back through equipment that is not set up for it.',
+  listing: 'The equipment is not listed as the rules ask.',
+};
+
+function sayWhy({ id, verdict, value }: Finding): Pick<Finding, 'note'> {
+  if (verdict === 'outside' && value === null) {
+    const words = (refusalWords as Partial<Record<string, string>>)[id];
+    return { note: words ?? 'What the utility knows of this place speaks against it.' };
+  }
   if (verdict !== 'needs-data') return {};
   const words = (lackWords as Partial<Record<string, string>>)[id];
   return { note: words ?? 'The utility’s records of this feeder lack what it takes to answer this.' };
@@ -79,6 +98,6 @@ export function releaseFindings(findings: readonly Finding[]): Finding[] {
   return [...deciding.values()].map((finding) => {
     const { id, question, verdict, value, comparison, limit, unit, consequence, source } = finding;
     const released = { id, question, verdict, value, comparison, limit, unit, consequence, source };
-    return { ...released, ...sayLack(finding) };
+    return { ...released, ...sayWhy(finding) };
   });
 }

@@ -1,4 +1,4 @@
-import { describeFinding } from '../finding-words.ts';
+import { describeFinding, fewestDecimals } from '../finding-words.ts';
 import type { Finding } from '../schemas/findings.ts';
 import type { Drawing, Mark } from './drawing.ts';
 import { circle, hatch, line, path, text } from './drawing.ts';
@@ -17,7 +17,7 @@ type Geometry = ReturnType<typeof drawLimitLine>;
 export function drawFindingLine(finding: Finding): Drawing | undefined {
   const { value, limit, question, comparison, unit, before } = finding;
   if (value === null || limit === null) return undefined;
-  const geometry = drawLimitLine({ value, limit, before, comparison, unit });
+  const geometry = drawLimitLine({ value, limit, before, comparison, unit, decimals: fewestDecimals(unit) });
   const words = describeFinding(finding);
   return {
     title: question,

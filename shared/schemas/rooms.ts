@@ -19,7 +19,7 @@ export interface RoomNode {
   kv: number;
   inverters: RoomSize;
   machine: RoomSize;
-  /** Questions that lack data there, and so were left out. */
+  /** Questions that lack data there: what they could not tell was left out, so that they may allow less. */
   lacking: string[];
 }
 
@@ -27,7 +27,7 @@ export interface Room {
   nodes: RoomNode[];
   /** Questions that every size was put to. */
   counted: string[];
-  /** Questions of the rule set that are left out: their answers hang on the plant itself, not on its size alone. */
+  /** Questions of the rule set that are left out: they hang on the plant itself, or take a study at every size. */
   notCounted: string[];
   mostKva: number;
 }

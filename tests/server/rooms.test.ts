@@ -41,7 +41,11 @@ describe('the room of a model', () => {
     const { inverters } = view!.room!.nodes.find(({ node }) => node === 'n2')!;
     // 15 % of section s1's peak of 9 MW, by which the fixture's circuit is bound.
     expect(inverters.bindsAt).toMatchObject({ question: 'section-peak-load' });
-    expect(view!.room!.counted).toContain('contribution');
+    const { counted, notCounted } = view!.room!;
+    expect(counted).toEqual(expect.arrayContaining(['contribution', 'rapid-voltage-change', 'reverse-flow']));
+    // What takes a study at every size, and what hangs on the plant itself.
+    expect(notCounted).toEqual(expect.arrayContaining(['steady-voltage', 'effective-grounding']));
+    expect(counted.filter((id) => notCounted.includes(id))).toEqual([]);
   });
 
   it('is worked out once: a second worker finds nothing to do', async () => {

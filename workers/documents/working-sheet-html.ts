@@ -105,5 +105,6 @@ function writeSteps(caption: string, steps: readonly PrintedStep[]): string {
 
 function writeDrawing(drawing: Drawing, id: string, isTold: boolean): string {
   const table = isTold ? '' : writeTable({ caption: drawing.title, ...drawing.table });
-  return `<figure>${writeSvg(drawing, id)}<figcaption>${e(drawing.description)}</figcaption></figure>${table}`;
+  const told = isTold ? '' : `<figcaption>${e(drawing.description)}</figcaption>`;
+  return `<figure>${writeSvg(drawing, id)}${told}</figure>${table}`;
 }

@@ -27,19 +27,32 @@ export function makeWorkingSheetPdf(sheet: Sheet, paper: Paper, madeAt: Date): P
   );
 }
 
-/** Headings go to the next page with what they stand over, unless that is a table, which may be longer than a page. */
+/** As many rows as a table may have and still be moved to the next page with its heading. */
+const fewRows = 5;
+
+function isLong(block: SheetBlock): boolean {
+  return (
+    (block.kind === 'table' && block.rows.length > fewRows) ||
+    (block.kind === 'steps' && block.steps.length > fewRows)
+  );
+}
+
+/** What belongs to the block after it: a heading, and a limit line, which its facts tell. */
+const leadsOn = (block: SheetBlock) =>
+  block.kind === 'heading' || (block.kind === 'drawing' && block.isTold === true);
+
+/** Headings go to the next page with what they stand over, unless that is a table that may be longer than a page. */
 function layOutSection({ title, blocks }: SheetSection): Content[] {
   const content: Content[] = [];
   let held: Content[] = [{ text: title, style: 'heading' }];
   for (const block of blocks) {
     const [first, ...rest] = layOutBlock(block);
-    if (block.kind === 'heading') {
+    if (leadsOn(block)) {
       held.push(first!, ...rest);
       continue;
     }
-    const isLong = block.kind === 'table' || block.kind === 'steps';
     if (held.length === 0) content.push(first!, ...rest);
-    else if (isLong) content.push(...held, first!, ...rest);
+    else if (isLong(block)) content.push(...held, first!, ...rest);
     else content.push({ unbreakable: true, stack: [...held, first!] }, ...rest);
     held = [];
   }
@@ -70,7 +83,26 @@ function layOutBlock(block: SheetBlock): Content[] {
   }
 }
 
-function layOutFacts(facts: Extract<SheetBlock, { kind: 'facts' }>['facts']): Content {
+type Facts = Extract<SheetBlock, { kind: 'facts' }>['facts'];
+
+/** Short figures, those of a finding, stand side by side above the other facts. */
+function layOutFacts(facts: Facts): Content {
+  const short = facts.filter(({ value, isFigure }) => isFigure && value.length <= 22);
+  if (short.length < 2) return listFacts(facts);
+  const beside = short.map(({ term, value }) => ({
+    width: 120,
+    stack: [
+      { text: printable(term), style: 'soft' },
+      { text: printable(value), style: 'figure' },
+    ],
+  }));
+  const others = facts.filter((fact) => !short.includes(fact));
+  return {
+    stack: [{ columns: beside, margin: [2, 2, 0, 0] }, ...(others.length > 0 ? [listFacts(others)] : [])],
+  };
+}
+
+function listFacts(facts: Facts): Content {
   return {
     layout: 'noBorders',
     margin: [0, 2, 0, 4],
@@ -95,8 +127,9 @@ const shortest = 14;
 
 function layOutTable({ caption, columns, rows }: Omit<SheetTableBlock, 'kind'>): Content {
   const size = columns.length > 6 ? 7 : 8;
+  const isDense = rows.length > 20;
   return {
-    layout: ruled,
+    layout: isDense ? { ...ruled, paddingTop: () => 1, paddingBottom: () => 0.5 } : ruled,
     margin: [0, 4, 0, 6],
     table: {
       headerRows: 2,
@@ -115,6 +148,7 @@ function layOutTable({ caption, columns, rows }: Omit<SheetTableBlock, 'kind'>):
             return {
               text: printable(value),
               fontSize: size,
+              ...(isDense && { lineHeight: 1.05 }),
               // Ids and figures stay on one line.
               noWrap: value.length <= shortest,
               ...(isFigure && { font: 'Mono', alignment: 'right' as const }),
@@ -126,10 +160,11 @@ function layOutTable({ caption, columns, rows }: Omit<SheetTableBlock, 'kind'>):
   };
 }
 
-/** A symbol or formula with its indices and powers. */
-function typeset(pieces: readonly FormulaPiece[]): Content[] {
+/** A symbol or formula with its indices and powers; pdfmake sets those at 0.58 of their size, too small to read. */
+function typeset(pieces: readonly FormulaPiece[], fontSize: number): Content[] {
   return pieces.map(({ text, place }) => ({
     text: printable(text),
+    ...(place !== 'line' && { fontSize: fontSize * 1.25 }),
     ...(place === 'below' && { sub: true }),
     ...(place === 'above' && { sup: true }),
   }));
@@ -152,18 +187,18 @@ function layOutSteps(caption: string, steps: readonly PrintedStep[]): Content {
 function layOutStep({ words, symbol, formula, inputs, result }: PrintedStep): TableCell[] {
   const inputWords = inputs.flatMap((input, index): Content[] => [
     ...(index > 0 ? [{ text: ';  ' }] : []),
-    ...typeset(input.symbol),
+    ...typeset(input.symbol, 7.5),
     { text: printable(` = ${input.value}`) },
   ]);
   const shown: Content[] = [{ text: printable(words), fontSize: 8.5 }];
   if (formula !== null) {
-    shown.push({ text: [...typeset(symbol), ' = ', ...typeset(formula)], font: 'Mono', fontSize: 8 });
-    shown.push({ text: inputWords, font: 'Mono', fontSize: 7, color: inks.soft });
+    shown.push({ text: [...typeset(symbol, 8), ' = ', ...typeset(formula, 8)], font: 'Mono', fontSize: 8 });
+    shown.push({ text: inputWords, font: 'Mono', fontSize: 7.5, color: inks.soft });
   }
   return [
     { stack: shown },
     {
-      text: [...typeset(symbol), ' = ', { text: printable(result) }],
+      text: [...typeset(symbol, 8), ' = ', { text: printable(result) }],
       font: 'Mono',
       fontSize: 8,
       alignment: 'right',
@@ -186,7 +221,7 @@ function layOutDrawing(drawing: Drawing, isTold: boolean): Content[] {
       stack: [
         ...(isTold ? [] : [{ text: printable(drawing.title), style: 'head' }]),
         { svg, width: drawing.width * scale, height: drawing.height * scale, margin: [0, 4, 0, 2] },
-        { text: printable(drawing.description), style: 'soft' },
+        ...(isTold ? [] : [{ text: printable(drawing.description), style: 'soft' }]),
       ],
     },
     ...(isTold ? [] : [layOutTable({ caption: drawing.title, ...drawing.table })]),

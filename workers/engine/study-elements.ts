@@ -12,6 +12,12 @@ export type Placed<K extends ElementKind> = {
   ofProject: boolean;
 };
 
+/** All elements of a kind, in the same order. */
+export function listElements<K extends ElementKind>(study: Study, kind: K): readonly Placed<K>['element'][] {
+  const of = (lists: Lists | undefined): readonly Placed<K>['element'][] => lists?.[kind] ?? [];
+  return of(study.feeder).concat(of(study.project));
+}
+
 /** Goes through all elements of a kind, the feeder's before the project's. */
 export function* eachElement<K extends ElementKind>(study: Study, kind: K): Generator<Placed<K>> {
   for (const part of ['feeder', 'project'] as const) {

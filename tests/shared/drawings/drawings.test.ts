@@ -73,6 +73,19 @@ describe('A drawing', () => {
     expect(listOutside(drawing)).toEqual([]);
   });
 
+  it('sets the words of a place that has everything below each other', () => {
+    const poi = place('poi', 2, {
+      branchesOff: true,
+      shunts: [{ kind: 'bank', id: 'GB-1' }],
+      ofProject: [{ kind: 'inverter', id: 'unit-1' }],
+    });
+    const { marks } = drawOneLine([...way.slice(0, 4), { ...poi, devices: ['RC-1'] }]);
+    const words = marks.filter(({ tag }) => tag === 'text').map(({ at }) => Number(at.y));
+    const gaps = words.sort((p, q) => p - q).map((y, index) => y - (words[index - 1] ?? -Infinity));
+    expect(words.length).toBeGreaterThan(8);
+    expect(Math.min(...gaps)).toBeGreaterThanOrEqual(12);
+  });
+
   it('joins the networks of each fault as the textbooks do', () => {
     const networks = { positive: { re: 0, im: 0.1 }, negative: { re: 0, im: 0.1 }, zero: null };
     const boxes = (kind: Parameters<typeof drawSequenceNetworks>[0], isLateral = false) =>

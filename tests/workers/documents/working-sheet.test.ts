@@ -33,7 +33,8 @@ function listTexts(block: SheetBlock): string[] {
     case 'facts':
       return block.facts.map(({ value }) => value);
     case 'drawing':
-      return block.isTold ? [block.drawing.description] : block.drawing.table.rows.flat();
+      // A limit line’s numbers stand in the facts below it.
+      return block.isTold ? [] : block.drawing.table.rows.flat();
     case 'signature':
       return block.lines;
     default:

@@ -3,12 +3,19 @@ import { proFormaRuleSet } from '../../../shared/rules/pro-forma.ts';
 import type { Finding } from '../../../shared/schemas/findings.ts';
 import type { RoomNode } from '../../../shared/schemas/rooms.ts';
 import type { Rule, RuleSet } from '../../../shared/schemas/rule-sets.ts';
-import type { Project, Study } from '../../../shared/schemas/study.ts';
+import type { Line, Load, Project, Study } from '../../../shared/schemas/study.ts';
+import type { Regulator, Substation } from '../../../shared/schemas/study-utility.ts';
 import { makeLoadedNetwork } from '../../../workers/bench/room.ts';
 import { makeInverterProject, makeMachineProject } from '../../../workers/engine/room/plants.ts';
+import type { Complex } from '../../../workers/engine/complex.ts';
+import { solveTwoNode } from '../../../workers/engine/flow/two-node.ts';
 import { findRoom } from '../../../workers/engine/room/room.ts';
 import { measureFindings, measureRule, shrink } from '../../../workers/engine/room/sizes.ts';
+import { findFirstChange } from '../../../workers/engine/room/voltage-change.ts';
 import { screenStudy } from '../../../workers/engine/trials.ts';
+
+/** Where power flows back is told of the size of a plant without a number too, and what is known is counted where more is not. */
+const isOfFlow = (id: string) => id === 'reverse-flow';
 
 /** Findings of a whole study that room counts: not of what lacks data there, and not of the kind of plant alone. */
 function countedFailures(study: Study, project: Project, ruleSet: RuleSet, counted: string[]): Finding[] {
@@ -16,7 +23,10 @@ function countedFailures(study: Study, project: Project, ruleSet: RuleSet, count
   if ('problems' in screened) throw new Error('The findings hold what is no number');
   return screened.findings.filter(
     ({ id, verdict, value, consequence }) =>
-      counted.includes(id) && verdict === 'outside' && value !== null && consequence !== 'note',
+      counted.includes(id) &&
+      verdict === 'outside' &&
+      (value !== null || isOfFlow(id)) &&
+      consequence !== 'note',
   );
 }
 
@@ -34,7 +44,7 @@ function holdAgainstStudies(study: Study, ruleSet: RuleSet, every: number): Set<
       const { kva, bindsAt } = node[kind];
       const failuresAt = (size: number) =>
         countedFailures(study, plantOf[kind](node, size), ruleSet, counted)
-          .filter(({ id }) => !node.lacking.includes(id))
+          .filter(({ id }) => isOfFlow(id) || !node.lacking.includes(id))
           .map(({ id, element = null }) => ({ question: id, element }));
       const words = `${kind} at ${node.node}, ${kva} kVA`;
       if (kva > 0) expect(failuresAt(kva * 0.999), words).toEqual([]);
@@ -111,6 +121,132 @@ describe('against whole studies at sampled nodes', () => {
     };
     const bound = holdAgainstStudies(tied, asking('contribution', 'interrupting-duty'), 25);
     expect(bound.size).toBeGreaterThan(0);
+  });
+});
+
+/** Ratings of lines and bank, loads with their minimum, of which some are on one phase, and a bank behind the source. */
+function makeRatedNetwork(substation: Partial<Substation>): Study {
+  const { feeder } = study;
+  const lines = feeder.lines!.map((line, index) => ({ ...line, ampacityA: 300 + 10 * (index % 23) }));
+  const loads: Load[] = Array.from({ length: 30 }, (_, index) => ({
+    id: `load${index}`,
+    node: `n${4 * index + 3}`,
+    phases: index % 5 === 0 ? 'B' : 'ABC',
+    kw: 90 + index,
+    kvar: 30,
+    minimumKw: 30 + index,
+  }));
+  const bank = { id: 'bank', kva: 9000, ...substation };
+  return { ...study, feeder: { ...feeder, lines, loads, substations: [bank] } };
+}
+
+describe('against whole studies where a formula gives the size', () => {
+  it('by the change when all of it trips, on grids where the voltage rises or falls, with a tie closed too', () => {
+    const [source] = study.feeder.sources!;
+    const scenarios = [{ id: 'closed', name: 'tie closed', switches: { tie: true } }];
+    const switches = [{ id: 'tie', from: 'n40', to: 'n110', closed: false }];
+    // The voltage rises with much resistance; with little it falls more than it rises.
+    for (const z1 of [
+      { r: 2, x: 4 },
+      { r: 0.05, x: 6 },
+    ]) {
+      const sources = [{ ...source!, min: { z1, z0: { r: 0.5, x: 6 } } }];
+      const weak: Study = { ...study, feeder: { ...study.feeder, sources, scenarios, switches } };
+      const bound = holdAgainstStudies(weak, asking('rapid-voltage-change'), 24);
+      expect(bound).toEqual(new Set(['rapid-voltage-change']));
+    }
+  });
+
+  it('by what flows back through lines and bank, with unbalanced load', () => {
+    const rated = makeRatedNetwork({ reverseFlow: true });
+    const rules = asking('reverse-flow');
+    expect(holdAgainstStudies(rated, rules, 12)).toEqual(new Set(['reverse-flow']));
+    const { nodes } = findRoom(rated, rules);
+    expect(new Set(nodes.map(({ inverters }) => inverters.bindsAt?.element)).size).toBeGreaterThan(5);
+    // The source itself has no line on its way.
+    expect(nodes.filter(({ lacking }) => lacking.length > 0).map(({ node }) => node)).toEqual(['n0']);
+    const small = makeRatedNetwork({ reverseFlow: true, kva: 1500 });
+    const bound = findRoom(small, rules).nodes.slice(1);
+    expect(new Set(bound.map(({ machine }) => machine.bindsAt?.element))).toEqual(new Set(['bank']));
+    holdAgainstStudies(small, rules, 40);
+  });
+
+  it('by a bank and a regulator through which nothing may flow back', () => {
+    const barred = makeRatedNetwork({ reverseFlow: false });
+    const line = barred.feeder.lines!.at(-1)!;
+    const regulators: Regulator[] = [
+      {
+        ...{ id: 'vr', branch: line.id, end: 'to', phases: 'ABC', reverse: 'locked' },
+        ...{ setVoltagePu: 1, bandwidthPu: 0.02 },
+      },
+    ];
+    const both: Study = { ...barred, feeder: { ...barred.feeder, regulators } };
+    const rules = asking('reverse-flow');
+    holdAgainstStudies(both, rules, 7);
+    const elements = findRoom(both, rules).nodes.map(({ inverters }) => inverters.bindsAt?.element);
+    expect(elements[119]).toBe('vr');
+    expect(elements.filter((element) => element === 'bank').length).toBeGreaterThan(50);
+  });
+
+  it('by the worse of two ways when a second operating case feeds part of it from elsewhere', () => {
+    const rated = makeRatedNetwork({ reverseFlow: true });
+    const switches = [{ id: 'tie', from: 'n40', to: 'n110', closed: false }];
+    const scenarios = [{ id: 'moved', name: 'moved', out: ['l110'], switches: { tie: true } }];
+    const moved: Study = { ...rated, feeder: { ...rated.feeder, switches, scenarios } };
+    const rules = asking('reverse-flow');
+    holdAgainstStudies(moved, rules, 11);
+    const kvaOf = (given: Study) => findRoom(given, rules).nodes.map(({ inverters }) => inverters.kva);
+    const [before, after] = [kvaOf(rated), kvaOf(moved)];
+    expect(after.every((kva, index) => kva <= before[index]! * 1.0002)).toBe(true);
+    expect(after.some((kva, index) => kva < before[index]! * 0.99)).toBe(true);
+  });
+
+  it('counts what is known, and says where data lack: no rating, no minimum, no permission, a loop', () => {
+    const rules = asking('reverse-flow');
+    const lackingOf = (given: Study) => {
+      holdAgainstStudies(given, rules, 35);
+      return findRoom(given, rules).nodes.filter(({ lacking }) => lacking.includes('reverse-flow')).length;
+    };
+    const rated = makeRatedNetwork({ reverseFlow: true });
+    const unrated = rated.feeder.lines!.map((line) =>
+      line.from === 'n0' ? { ...line, ampacityA: undefined } : line,
+    );
+    expect(lackingOf({ ...rated, feeder: { ...rated.feeder, lines: unrated as Line[] } })).toBe(120);
+    expect(lackingOf(makeRatedNetwork({}))).toBe(120);
+    const [load, ...known] = rated.feeder.loads!.toReversed();
+    const loads = [...known, { ...load!, minimumKw: undefined } as Load];
+    expect(lackingOf({ ...rated, feeder: { ...rated.feeder, loads } })).toBeGreaterThan(1);
+    const tie = { id: 'tie', from: 'n40', to: 'n110', closed: true };
+    const looped = lackingOf({ ...rated, feeder: { ...rated.feeder, switches: [tie] } });
+    expect(looped).toBeGreaterThan(1);
+    expect(looped).toBeLessThan(120);
+  });
+});
+
+describe('the first change of a voltage', () => {
+  const volts = (z: Complex, p: number) => solveTwoNode(z, p, 0);
+
+  it('is the size at which two nodes change by as much, up or down', () => {
+    for (const [z, change] of [
+      [{ re: 0.08, im: 0.16 }, 0.03],
+      [{ re: 0.002, im: 0.2 }, 0.03],
+      [{ re: 0.05, im: 0 }, 0.05],
+    ] as const) {
+      expect(Math.abs(volts(z, findFirstChange(z, change))! - 1)).toBeCloseTo(change, 10);
+    }
+  });
+
+  it('is the rise where a fall follows, and where the voltage is lost before it falls as far', () => {
+    const rising = { re: 0.05, im: 0.2 };
+    const rise = findFirstChange(rising, 0.03);
+    expect(volts(rising, rise)).toBeCloseTo(1.03, 10);
+    expect(volts(rising, 2 * rise)).toBeLessThan(1.03);
+    const faint = { re: 0, im: 0.25 };
+    const lost = findFirstChange(faint, 0.4);
+    expect(lost).toBeCloseTo(2, 10);
+    expect(volts(faint, lost * 1.0001)).toBeUndefined();
+    expect(volts(faint, lost * 0.9999)).toBeGreaterThan(0.7);
+    expect(findFirstChange({ re: 0, im: 0 }, 0.03)).toBe(Infinity);
   });
 });
 

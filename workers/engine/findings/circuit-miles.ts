@@ -21,7 +21,15 @@ export type CircuitWay = {
  * The way to the substation in the model as it stands: all lines between the point of interconnection and the transformer of a
  * substation that the study lists; without one all lines up to the source, which is never shorter.
  */
-export function traceCircuit({ study, model, upstream }: Screening): CircuitWay {
+export function traceCircuit(screening: Screening): CircuitWay {
+  let way = known.get(screening.upstream);
+  if (!way) known.set(screening.upstream, (way = measureWay(screening)));
+  return way;
+}
+
+const known = new WeakMap<Screening['upstream'], CircuitWay>();
+
+function measureWay({ study, model, upstream }: Screening): CircuitWay {
   const banks = new Set((study.feeder.substations ?? []).map(({ transformer }) => transformer));
   const ids = upstream.branches.map((branch) => branchAt(model, branch).id);
   const bank = ids.findIndex((id) => banks.has(id));

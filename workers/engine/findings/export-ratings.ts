@@ -2,7 +2,7 @@ import type { Line, Transformer } from '../../../shared/schemas/study.ts';
 import { branchAt, nodeAt } from '../model-parts.ts';
 import type { NetExport } from '../flow/net-export.ts';
 import { findReversePhase } from '../flow/net-export.ts';
-import { eachElement } from '../study-elements.ts';
+import { listElements } from '../study-elements.ts';
 import type { Working } from '../working.ts';
 import type { Screening } from './screening.ts';
 
@@ -16,9 +16,9 @@ export function ratingsAt({ study, model }: Screening, branch: number): Rated[] 
   const { id: element, from, to } = branchAt(model, branch);
   const { lines, transformers } = ratingLists(study);
   const kv = nodeAt(model, from).kv;
-  const transformer = transformers.get(element);
+  const transformer = transformers[branch - lines.length];
   if (transformer) return [{ element, kv: nodeAt(model, to).kv, kva: transformer.kva }];
-  const amps = lines.get(element)?.ampacityA;
+  const amps = lines[branch]?.ampacityA;
   const regulators = (study.feeder.regulators ?? []).filter((each) => each.branch === element && each.ratedA);
   return [
     { element, kv, ...(amps !== undefined && { amps }) },
@@ -26,15 +26,15 @@ export function ratingsAt({ study, model }: Screening, branch: number): Rated[] 
   ];
 }
 
-type RatingLists = { lines: Map<string, Line>; transformers: Map<string, Transformer> };
+/** By branch of the model: lines first, then transformers. */
+type RatingLists = { lines: readonly Line[]; transformers: readonly Transformer[] };
 const known = new WeakMap<Screening['study'], RatingLists>();
 
 function ratingLists(study: Screening['study']): RatingLists {
   let lists = known.get(study);
   if (!lists) {
-    const map = <T>(kind: 'lines' | 'transformers') =>
-      new Map(Array.from(eachElement(study, kind), ({ element }) => [element.id, element as T]));
-    known.set(study, (lists = { lines: map<Line>('lines'), transformers: map<Transformer>('transformers') }));
+    lists = { lines: listElements(study, 'lines'), transformers: listElements(study, 'transformers') };
+    known.set(study, lists);
   }
   return lists;
 }

@@ -37,14 +37,21 @@ function gather({ study, project, model }: Screening): Generator[] {
   });
 }
 
-/** Lists what generates in an island. */
+const knownIn = new WeakMap<Island, readonly Generator[]>();
+
+/** Lists what generates in an island; all questions about it share one walk over the generators. */
 export function generatorsIn(
   screening: Screening,
   { solver }: OperatingCase,
-  { holds }: Island,
+  island: Island,
 ): readonly Generator[] {
-  const out = new Set(solver.scenario?.out);
-  return listGenerators(screening).filter(({ id, node }) => holds(node) && !out.has(id));
+  let generators = knownIn.get(island);
+  if (!generators) {
+    const out = new Set(solver.scenario?.out);
+    generators = listGenerators(screening).filter(({ id, node }) => island.holds(node) && !out.has(id));
+    knownIn.set(island, generators);
+  }
+  return generators;
 }
 
 export function sumKva(generators: readonly Generator[]): number {

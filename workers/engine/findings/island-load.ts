@@ -1,5 +1,6 @@
 import type { Load } from '../../../shared/schemas/study.ts';
 import type { Section } from '../../../shared/schemas/study-utility.ts';
+import { wiringOf } from '../wiring.ts';
 import type { Generator } from './island-generation.ts';
 import { generatorsIn } from './island-generation.ts';
 import type { Island, IslandsOfCase } from './islands.ts';
@@ -72,8 +73,13 @@ function findSection(screening: Screening, island: Island): Section | undefined 
   };
   const asItStands = listIslands(screening)[0]!.islands;
   if (asItStands.includes(island)) return sectionOf(island.device.id);
-  const isInside = ({ holds }: Island, counts: (node: number) => boolean) =>
-    model.nodes.every((_, node) => !holds(node) || !counts(node) || island.holds(node));
+  const count = wiringOf(model).nodeFlags.length;
+  const isInside = ({ holds }: Island, counts: (node: number) => boolean) => {
+    for (let node = 0; node < count; node++) {
+      if (holds(node) && counts(node) && !island.holds(node)) return false;
+    }
+    return true;
+  };
   // Where the model lists its loads, a device's own section may lack what has none of them.
   const { loads = [] } = study.feeder;
   const bearsLoad = new Set(loads.map(({ node }) => model.nodeIndex.get(node)!));

@@ -5,6 +5,7 @@ import { branchAt, nodeAt } from '../model-parts.ts';
 import { openingsSeenFrom } from '../one-opening.ts';
 import { choiceOfScenario } from '../scenarios.ts';
 import { withCase } from '../solve-case.ts';
+import { wiringOf } from '../wiring.ts';
 import type { Island, IslandsOfCase } from './islands.ts';
 import type { OperatingCase } from './operating-cases.ts';
 import type { Screening } from './screening.ts';
@@ -74,9 +75,10 @@ function cutOut(
       .map((each) => ({ ...each, ...keepOwn(each), node: indexOf[each.node]! }));
   const branches: Branch[] = [];
   const placeOf = new Map(islands.map(({ opening }) => [opening.branch, -1]));
-  for (let index = 0; index < model.branches.length; index++) {
+  const ends = wiringOf(model);
+  for (let index = 0; index < ends.from.length; index++) {
+    if (!isHeld({ from: ends.from[index]!, to: ends.to[index]! })) continue;
     const branch = branchAt(model, index);
-    if (!isHeld(branch)) continue;
     if (placeOf.has(index)) placeOf.set(index, branches.length);
     branches.push({
       ...branch,
@@ -122,7 +124,7 @@ function numberNodes(
   { holds }: Island,
   stub: Branch,
 ): { indexOf: Int32Array; nodes: ModelNode[] } {
-  const indexOf = new Int32Array(model.nodes.length).fill(-1);
+  const indexOf = new Int32Array(wiringOf(model).nodeFlags.length).fill(-1);
   const nodes: ModelNode[] = [];
   for (let node = 0; node < indexOf.length; node++) {
     if (!holds(node) && node !== stub.from && node !== stub.to) continue;

@@ -1,5 +1,7 @@
 import type { Device } from '../../../shared/schemas/study.ts';
 import type { Opening } from '../case.ts';
+import { branchAt } from '../model-parts.ts';
+import { wiringOf } from '../wiring.ts';
 import type { OperatingCase } from './operating-cases.ts';
 import type { Screening } from './screening.ts';
 import { listSectionalizing, traceCuts } from './upstream.ts';
@@ -44,11 +46,12 @@ export function listIslands(screening: Screening): readonly IslandsOfCase[] {
 function isAlike({ model, study, project }: Screening, base: IslandsOfCase, other: IslandsOfCase): boolean {
   const { switches = {}, out = [] } = other.operating.solver.scenario!;
   const outermost = base.islands[0];
+  const count = wiringOf(model).nodeFlags.length;
   if (!outermost || other.islands.length !== base.islands.length) return false;
   for (const [index, { device, holds }] of base.islands.entries()) {
     const like = other.islands[index]!;
     if (like.device !== device) return false;
-    if (!model.nodes.every((_, node) => holds(node) === like.holds(node))) return false;
+    for (let node = 0; node < count; node++) if (holds(node) !== like.holds(node)) return false;
   }
   const isInside = (node: number) => outermost.holds(node);
   if (model.switches.some(({ id, from, closed }) => isInside(from) && (switches[id] ?? closed) !== closed)) {
@@ -57,10 +60,13 @@ function isAlike({ model, study, project }: Screening, base: IslandsOfCase, othe
   if (out.length === 0) return true;
   const isOut = new Set(out);
   const isOutInside = ({ id, node }: { id: string; node: number }) => isOut.has(id) && isInside(node);
+  const branches = out
+    .flatMap((id) => model.branchIndex.get(id) ?? [])
+    .map((index) => branchAt(model, index));
+  const outSwitches = model.switches.filter(({ id }) => isOut.has(id));
   const loads = [...(study.feeder.loads ?? []), ...(project.loads ?? [])];
   return !(
-    [...model.branches, ...model.switches].some((each) => isOutInside({ id: each.id, node: each.from })) ||
-    [...model.branches, ...model.switches].some((each) => isOutInside({ id: each.id, node: each.to })) ||
+    [...branches, ...outSwitches].some(({ from, to }) => isInside(from) || isInside(to)) ||
     [...model.machines, ...model.groundingBanks, ...model.inverters].some(isOutInside) ||
     loads.some(({ id, node }) => isOutInside({ id, node: model.nodeIndex.get(node)! }))
   );

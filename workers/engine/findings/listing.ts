@@ -28,12 +28,15 @@ export function answerListing(screening: Screening): Answered[] {
 function judgeGenerator(screening: Screening, { id, unit }: Generator): Answered {
   const { listing } = unit.kind === 'machine' ? unit.machine : unit.inverter;
   const listed = unit.kind === 'inverter' ? unit.inverter.listed : undefined;
-  const { consequence } = ruleOf(screening, question).limits[0];
   const refusal = findRefusal(screening, listing, listed);
   const missing = listMissing(listing, listed);
   if (listing?.trdPercent === undefined) {
     const note = refusal ?? `Not known: ${missing.join(', ')}.`;
     return answer(screening, question, refusal ? 'outside' : 'needs-data', { element: id, note });
+  }
+  if (refusal) {
+    const note = `${refusal} Its total rated-current distortion is ${listing.trdPercent} %.`;
+    return answer(screening, question, 'outside', { element: id, note });
   }
   const working = new Working();
   working.given('TRD', `Total rated-current distortion of ${id}, from its sheet`, listing.trdPercent, '%');
@@ -48,7 +51,6 @@ function judgeGenerator(screening: Screening, { id, unit }: Generator): Answered
     note: `${id}: ${says.filter(Boolean).join(', ')}; total rated-current distortion ${listing.trdPercent} %.`,
     working: working.steps,
   });
-  if (refusal) return { ...judged, verdict: 'outside', consequence, note: `${refusal} ${judged.note}` };
   if (judged.verdict === 'outside' || missing.length === 0) return judged;
   const note = `Not known: ${missing.join(', ')}.`;
   return answer(screening, question, 'needs-data', { element: id, note, working: working.steps });

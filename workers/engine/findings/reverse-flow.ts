@@ -19,6 +19,9 @@ const id = 'reverse-flow';
 
 type Loaded = Rated & { operating: OperatingCase; sum: NetExport; percent: number };
 
+/** What is loaded most so far: a long way has too many branches to keep them all. */
+type Loadings = { worst: Loaded | undefined };
+
 /**
  * Can lines, transformers and regulators carry the export?
  * All generation beyond each line and transformer on the way to the source, at full export, less the minimum load there,
@@ -29,7 +32,7 @@ export function answerReverseFlow(screening: Screening): Answered[] {
   if (projectKva(screening.project) === 0) {
     return [answer(screening, id, 'not-applicable', { note: 'The project has no generator.' })];
   }
-  const loaded: Loaded[] = [];
+  const loaded: Loadings = { worst: undefined };
   const others = new Map<string, Answered>();
   const note = (found: Answered) => {
     if (!others.has(found.element!)) others.set(found.element!, found);
@@ -41,7 +44,7 @@ export function answerReverseFlow(screening: Screening): Answered[] {
     const looped = walk(screening, operating, loaded, note);
     if (looped) return [looped];
   }
-  const worst = answerWorst(screening, loaded);
+  const worst = answerWorst(screening, loaded.worst);
   // What is loaded most may have a control to answer for too.
   const named = others.has(worst.element!) ? { ...worst, element: `${worst.element!} (loading)` } : worst;
   return [named, ...others.values()];
@@ -51,7 +54,7 @@ export function answerReverseFlow(screening: Screening): Answered[] {
 function walk(
   screening: Screening,
   operating: OperatingCase,
-  loaded: Loaded[],
+  loaded: Loadings,
   note: (found: Answered) => void,
 ): Answered | undefined {
   const { model, poi, project, study } = screening;
@@ -73,20 +76,22 @@ function walk(
   const { choice } = operating.solver.solve('after', nodeAt(model, poi).kv);
   const sums = addUpExports(screening, choice, cuts, upstream.branches.length);
   const unrated: string[] = [];
+  const load = (rated: Rated, sum: NetExport) => {
+    const percent = percentOf(rated, sum);
+    if (percent === undefined) unrated.push(rated.element);
+    else if (!loaded.worst || percent > loaded.worst.percent + 1e-9)
+      loaded.worst = { ...rated, operating, sum, percent };
+  };
   upstream.branches.forEach((branch, place) => {
     const sum = sums[place]!;
-    for (const rated of ratingsAt(screening, branch)) {
-      const percent = percentOf(rated, sum);
-      if (percent === undefined) unrated.push(rated.element);
-      else loaded.push({ ...rated, operating, sum, percent });
-    }
+    for (const rated of ratingsAt(screening, branch)) load(rated, sum);
     if (!findReversePhase(sum)) return;
+    const { id: name } = branchAt(model, branch);
     for (const regulator of study.feeder.regulators ?? []) {
-      if (regulator.branch === branchAt(model, branch).id) checkRegulator(screening, regulator, note);
+      if (regulator.branch === name) checkRegulator(screening, regulator, note);
     }
     for (const substation of study.feeder.substations ?? []) {
-      if (substation.transformer === branchAt(model, branch).id)
-        checkSubstation(screening, substation, sum, note);
+      if (substation.transformer === name) checkSubstation(screening, substation, sum, note);
     }
   });
   const outermost = sums.at(-1);
@@ -98,9 +103,7 @@ function walk(
       kv: nodeAt(model, upstream.path.at(-1)!).kv,
       kva: substation.kva,
     };
-    const percent = percentOf(rated, outermost);
-    if (percent === undefined) unrated.push(rated.element);
-    else loaded.push({ ...rated, operating, sum: outermost, percent });
+    load(rated, outermost);
     if (findReversePhase(outermost)) checkSubstation(screening, substation, outermost, note);
   }
   if (unrated.length > 0) {
@@ -160,12 +163,11 @@ function checkSubstation(
   );
 }
 
-function answerWorst(screening: Screening, loaded: readonly Loaded[]): Answered {
-  if (loaded.length === 0) {
+function answerWorst(screening: Screening, worst: Loaded | undefined): Answered {
+  if (!worst) {
     const note = 'No line or transformer with a known rating lies between the source and the project.';
     return answer(screening, id, 'needs-data', { element: screening.project.node, note });
   }
-  const worst = loaded.reduce((p, q) => (q.percent > p.percent + 1e-9 ? q : p));
   const { element, percent, sum, operating } = worst;
   const working = new Working();
   const flow = `${kilowatts(sum.generationKw)} of generation beyond it at full export, ${kilowatts(sum.loadKw)} of minimum load`;

@@ -4,7 +4,10 @@ import { isClosed, isInService, isPresent } from '../case.ts';
 import type { Graph } from '../graph.ts';
 import { DisjointSets, buildGraph } from '../graph.ts';
 import { branchAt, nodeAt } from '../model-parts.ts';
+import { listEdges as listInService, listPresentNodes } from '../joined-nodes.ts';
 import { eachElement } from '../study-elements.ts';
+import { wiringOf } from '../wiring.ts';
+import { newArrays } from '../work-arrays.ts';
 
 /*
  * What a load flow walks over: trees that start at the sources. A place is what a node is in such a tree; places are
@@ -41,14 +44,21 @@ export type FlowNetwork = {
 /** Where a tree starts, and the angle of the voltage there, in steps of 30° behind the first source of its island. */
 export type Root = { readonly place: number; readonly source: Source; readonly clockHours: number };
 
-type Edges = { from: number[]; to: number[]; ids: string[]; branchCount: number; branches: number[] };
+/** `branches` are indices in the model, -1 for closed switches, which come last. */
+type Edges = {
+  from: number[];
+  to: number[];
+  branchCount: number;
+  branches: number[];
+  switchIds: string[];
+};
 
 /** Lays out the trees of one case; branches and nodes that are out in the case are left out. */
 export function traceFlowNetwork(study: Study, model: Model, choice: CaseChoice): FlowNetwork {
   const edges = listEdges(model, choice);
-  const graph = buildGraph(model.nodes.length, edges.from, edges.to);
+  const graph = buildGraph(wiringOf(model).nodeFlags.length, edges.from, edges.to);
   const sources = listSources(study, model, choice, edges);
-  const count = model.nodes.length;
+  const count = wiringOf(model).nodeFlags.length;
   const placeOf = new Int32Array(count).fill(-1);
   const nodeOf: number[] = [];
   const parent: number[] = [];
@@ -60,7 +70,9 @@ export function traceFlowNetwork(study: Study, model: Model, choice: CaseChoice)
     nodeOf.push(node);
     parent.push(above);
     branch.push(edge === -1 ? -1 : edges.branches[edge]!);
-    phases.push(above === -1 ? nodeAt(model, node).phases : phasesAlong(model, edges, edge, phases[above]!));
+    phases.push(
+      above === -1 ? wiringOf(model).nodePhases[node]! : phasesAlong(model, edges, edge, phases[above]!),
+    );
   };
   for (const { node } of sources) put(node, -1, -1);
   for (let head = 0; head < nodeOf.length; head++) {
@@ -77,7 +89,7 @@ export function traceFlowNetwork(study: Study, model: Model, choice: CaseChoice)
     const v = edges.to[edge]!;
     if (isUsed[edge] || u === v || placeOf[u] === -1 || placeOf[v] === -1) return;
     const along = phasesAlong(model, edges, edge, phases[placeOf[u]!]!) & phases[placeOf[v]!]!;
-    cuts.push({ place: nodeOf.length, target: placeOf[v]!, phases: along, id: edges.ids[edge]! });
+    cuts.push({ place: nodeOf.length, target: placeOf[v]!, phases: along, id: nameOf(model, edges, edge) });
     nodeOf.push(v);
     parent.push(placeOf[u]!);
     branch.push(edges.branches[edge]!);
@@ -102,30 +114,36 @@ export function traceFlowNetwork(study: Study, model: Model, choice: CaseChoice)
 }
 
 function listEdges(model: Model, choice: CaseChoice): Edges {
-  const edges: Edges = { from: [], to: [], ids: [], branchCount: 0, branches: [] };
-  const push = (from: number, to: number, id: string, branch: number) => {
+  const edges: Edges = { from: [], to: [], branchCount: 0, branches: [], switchIds: [] };
+  const push = (from: number, to: number, branch: number) => {
     edges.from.push(from);
     edges.to.push(to);
-    edges.ids.push(id);
     edges.branches.push(branch);
   };
-  model.branches.forEach((branch, index) => {
-    if (isInService(model, choice, branch)) push(branch.from, branch.to, branch.id, index);
+  const inService = listInService(model, choice, listPresentNodes(model, choice, newArrays), [], newArrays);
+  inService.from.forEach((from, index) => {
+    if (from !== -1) push(from, inService.to[index]!, index);
   });
   edges.branchCount = edges.from.length;
   // A switch between places that other switches join already carries what nobody can tell, and changes no voltage.
-  const joined = new DisjointSets(model.nodes.length);
+  const joined = new DisjointSets(wiringOf(model).nodeFlags.length);
   for (const link of model.switches) {
     if (!isClosed(choice, link) || !isInService(model, choice, link) || !joined.join(link.from, link.to))
       continue;
-    push(link.from, link.to, link.id, -1);
+    push(link.from, link.to, -1);
+    edges.switchIds.push(link.id);
   }
   return edges;
 }
 
+function nameOf(model: Model, { branches, branchCount, switchIds }: Edges, edge: number): string {
+  const branch = branches[edge]!;
+  return branch === -1 ? switchIds[edge - branchCount]! : branchAt(model, branch).id;
+}
+
 /** One source of those that closed switches join; the first of each place holds the voltage. */
 function listSources(study: Study, model: Model, choice: CaseChoice, edges: Edges) {
-  const joined = new DisjointSets(model.nodes.length);
+  const joined = new DisjointSets(wiringOf(model).nodeFlags.length);
   for (let edge = edges.branchCount; edge < edges.from.length; edge++)
     joined.join(edges.from[edge]!, edges.to[edge]!);
   const taken = new Set<number>();
@@ -143,13 +161,16 @@ function listSources(study: Study, model: Model, choice: CaseChoice, edges: Edge
 
 function phasesAlong(model: Model, { branches, from, to }: Edges, edge: number, given: number): number {
   const index = branches[edge]!;
-  const nodes = nodeAt(model, from[edge]!).phases & nodeAt(model, to[edge]!).phases;
-  return index === -1 ? given & nodes : given & nodes & branchAt(model, index).phases;
+  const { nodePhases, selfRe } = wiringOf(model);
+  const nodes = nodePhases[from[edge]!]! & nodePhases[to[edge]!]!;
+  // Where all lines have all phases there are none to look up.
+  const isAll = index === -1 || selfRe.length === 0;
+  return isAll ? given & nodes : given & nodes & branchAt(model, index).phases;
 }
 
 /** By node: its lag behind the first of its island. */
 function addUpHours(model: Model, { from, branches }: Edges, graph: Graph): Int32Array {
-  const hours = new Int32Array(model.nodes.length);
+  const hours = new Int32Array(wiringOf(model).nodeFlags.length);
   const isSeen = new Uint8Array(hours.length);
   for (let first = 0; first < hours.length; first++) {
     if (isSeen[first]) continue;
@@ -162,7 +183,7 @@ function addUpHours(model: Model, { from, branches }: Edges, graph: Graph): Int3
         if (isSeen[v]) continue;
         isSeen[v] = 1;
         const edge = graph.edge[p]!;
-        const lag = branches[edge] === -1 ? 0 : branchAt(model, branches[edge]!).clockHour;
+        const lag = branches[edge] === -1 ? 0 : wiringOf(model).clockHours[branches[edge]!]!;
         hours[v] = hours[u]! + (from[edge] === u ? lag : -lag);
         queue.push(v);
       }

@@ -6,7 +6,7 @@ import { add, divide, polar, scale, subtract, zero } from '../complex.ts';
 import { isConstructed, lineCalculator } from '../line-impedances.ts';
 import { branchAt, nodeAt } from '../model-parts.ts';
 import { baseOhms } from '../per-unit.ts';
-import { eachElement } from '../study-elements.ts';
+import { listElements } from '../study-elements.ts';
 import type { FlowNetwork } from './flow-network.ts';
 import { matrixSize, writeSequences } from './matrix3.ts';
 
@@ -23,7 +23,7 @@ const one: Complex = { re: 1, im: 0 };
 export function layOutLines(study: Study, network: FlowNetwork): Float64Array {
   const { model, branch, phases } = network;
   const matrices = new Float64Array(branch.length * matrixSize);
-  const lines: Line[] = Array.from(eachElement(study, 'lines'), ({ element }) => element as Line);
+  const lines: readonly Line[] = listElements(study, 'lines');
   const calculate = lineCalculator(study);
   for (let place = 0; place < branch.length; place++) {
     const index = branch[place]!;

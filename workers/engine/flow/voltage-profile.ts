@@ -54,8 +54,10 @@ export function describeVoltageProfile(screening: Screening): VoltageProfile | u
     });
   const onWay = new Map(way.map((node, index) => [node, index]));
   const regulators = (study.feeder.regulators ?? []).flatMap(({ id, branch, end }) => {
-    const { from, to } = model.branches[model.branchIndex.get(branch) ?? -1] ?? {};
-    if (from === undefined || to === undefined || !onWay.has(from) || !onWay.has(to)) return [];
+    const index = model.branchIndex.get(branch);
+    if (index === undefined) return [];
+    const { from, to } = branchAt(model, index);
+    if (!onWay.has(from) || !onWay.has(to)) return [];
     return [{ id, km: km[onWay.get(end === 'from' ? from : to)!]! }];
   });
   return {

@@ -3,6 +3,7 @@ import type { Model } from '../case.ts';
 import { allPhases } from '../case.ts';
 import { branchAt, nodeAt } from '../model-parts.ts';
 import type { Upstream } from '../findings/upstream.ts';
+import { wiringOf } from '../wiring.ts';
 import { isSectionalizing } from '../findings/upstream.ts';
 
 /*
@@ -135,8 +136,7 @@ function belongs(model: Model, node: number, branch: number, kind: ZoneKind): bo
   if (ofProject || companion || kv <= primaryAboveKv) return false;
   if (kind === 'phase') return hasTwo(phases);
   if (branch === -1) return true;
-  const across = branchAt(model, branch);
-  return across.phases !== allPhases || across.zeroSequence.kind === 'series';
+  return wiringOf(model).zeroGoesThrough[branch] === 1 || branchAt(model, branch).phases !== allPhases;
 }
 
 function hasTwo(phases: number): boolean {

@@ -12,15 +12,19 @@ import { busOfNode } from '../solve-case.ts';
 import { makeStateSolvers } from '../state-solver.ts';
 import { separateModels } from '../x-over-r.ts';
 import { addPlant } from './added-plant.ts';
+import { testOf } from './bounds.ts';
 import { findContribution, placeContribution } from './contribution.ts';
 import { findLoading, placeDevices } from './duties.ts';
 import type { LoadPlace } from './loads.ts';
 import { nodeQuestions, placeLoads, zoneQuestions } from './loads.ts';
 import type { PlantKind } from './plants.ts';
+import { makeBareProject } from './plants.ts';
+import { makeReverseBounds } from './reverse-flow.ts';
 import type { RoomNetwork } from './seen-places.ts';
 import { makeRoomNetwork } from './seen-places.ts';
 import type { Test } from './sizes.ts';
 import { measureRule, mostKva, shrink } from './sizes.ts';
+import { boundVoltageChange } from './voltage-change.ts';
 import { traceWays } from './ways-to-source.ts';
 
 /*
@@ -30,9 +34,11 @@ import { traceWays } from './ways-to-source.ts';
 
 const primaryAboveKv = 1;
 const networkQuestions = ['contribution', 'interrupting-duty'] as const satisfies readonly QuestionId[];
+/** Whose largest size follows from a formula, the same for both kinds of plant. */
+const boundQuestions = ['rapid-voltage-change', 'reverse-flow'] as const satisfies readonly QuestionId[];
 
 function listRoomQuestions(ruleSet: RuleSet): { counted: QuestionId[]; notCounted: QuestionId[] } {
-  const known = new Set<string>([...zoneQuestions, ...nodeQuestions, ...networkQuestions]);
+  const known = new Set<string>([...zoneQuestions, ...nodeQuestions, ...networkQuestions, ...boundQuestions]);
   const asked = listAsked(ruleSet).map(({ id }) => id as QuestionId);
   return {
     counted: asked.filter((id) => known.has(id)),
@@ -55,6 +61,8 @@ export function findRoom(
   });
   return { nodes, ...listRoomQuestions(ruleSet), mostKva };
 }
+
+type Bounds = { tests: Test[]; openAbove: [QuestionId, number][] };
 
 function makeFinder(study: Study, ruleSet: RuleSet) {
   const model = prepareModel(study);
@@ -93,6 +101,7 @@ function makeFinder(study: Study, ruleSet: RuleSet) {
   );
   const zones = new Map<string, LoadPlace>();
   const circuitOf = findCircuits(study);
+  const boundReverseFlow = makeReverseBounds(study, model, ruleSet);
 
   function zoneAt(node: number, kind: PlantKind, cases: readonly OperatingCase[]): LoadPlace {
     const devicesOnWay = cases.map(({ upstream }) =>
@@ -122,12 +131,32 @@ function makeFinder(study: Study, ruleSet: RuleSet) {
     return tests;
   }
 
-  function findSize(node: number, kind: PlantKind, cases: readonly OperatingCase[]) {
+  /** What bounds both kinds of plant at a node, and what above which size lacks data. */
+  function findBounds(node: number, cases: readonly OperatingCase[]): Bounds {
+    const fed = cases.filter(({ upstream: { path, isSource } }) => isSource[path.at(-1)!] === 1);
+    if (fed.length === 0) {
+      const asked = boundQuestions.filter((id) => ruleSet.rules[id]);
+      return { tests: [], openAbove: asked.map((id) => [id, -Infinity]) };
+    }
+    const { id } = model.nodes[node]!;
+    const screening = {
+      ...{ ...ground, project: makeBareProject('inverters', id, 1), cases },
+      ...{ poi: node, upstream: cases[0]!.upstream },
+    };
+    const reverse = boundReverseFlow(screening, fed);
+    return {
+      tests: [testOf(boundVoltageChange(ruleSet, model, fed, node)), testOf(reverse?.bound)],
+      openAbove: [['reverse-flow', reverse?.openAbove ?? -Infinity]],
+    };
+  }
+
+  function findSize(node: number, kind: PlantKind, cases: readonly OperatingCase[], bounds: Bounds) {
     const zone = zoneAt(node, kind, cases);
     const here = placeLoads(ground, cases, node, kind, nodeQuestions);
-    const tests = [zone.test, here.test, ...listNetworkTests(node, kind, cases)];
+    const tests = [zone.test, here.test, ...bounds.tests, ...listNetworkTests(node, kind, cases)];
     const size = tests.reduce(shrink, { kva: mostKva, bindsAt: null } as RoomSize);
-    return { size, lacking: [...zone.lacking, ...here.lacking] };
+    const open = bounds.openAbove.flatMap(([id, above]) => (size.kva > above ? [id] : []));
+    return { size, lacking: [...zone.lacking, ...here.lacking, ...open] };
   }
 
   return {
@@ -138,8 +167,9 @@ function makeFinder(study: Study, ruleSet: RuleSet) {
     find(node: number): RoomNode {
       const { id, kv } = model.nodes[node]!;
       const cases = casesAt(node);
-      const inverters = findSize(node, 'inverters', cases);
-      const machine = findSize(node, 'machine', cases);
+      const bounds = findBounds(node, cases);
+      const inverters = findSize(node, 'inverters', cases, bounds);
+      const machine = findSize(node, 'machine', cases, bounds);
       const lacking = new Set([...inverters.lacking, ...machine.lacking]);
       if (lacksGroundSource) for (const question of networkQuestions) lacking.add(question);
       return {

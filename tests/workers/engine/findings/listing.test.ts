@@ -34,7 +34,10 @@ describe('Listing and harmonics', () => {
       project.inverters![0]!.listed = false;
       delete project.inverters![0]!.listing!.standard;
     });
-    expect(ask(unlisted, question)[0]).toMatchObject({ verdict: 'outside', value: 3 });
+    const [refused] = ask(unlisted, question);
+    // No number stands beside it: one that keeps its limit would read as if it decided.
+    expect(refused).toMatchObject({ verdict: 'outside', value: null });
+    expect(refused!.note).toContain('distortion is 3 %');
     const other = listedAs((listing) => (listing.standard = 'UL 17410'));
     expect(ask(other, question)[0]!.note).toContain('none of: UL 1741');
     const renamed = listedAs((listing) => (listing.standard = 'IEEE 1547.1-2020'));
