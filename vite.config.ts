@@ -4,6 +4,13 @@ import { defineConfig } from 'vitest/config';
 const apiPort = process.env.FEEDERWRIGHT_API_PORT ?? '7401';
 const api = { target: `http://127.0.0.1:${apiPort}`, changeOrigin: false };
 
+/** Functions of their arguments and no more: these tests may share one process, which loads the engine once. */
+const pureTests = [
+  'tests/workers/engine/**/*.test.ts',
+  'tests/shared/**/*.test.ts',
+  'tests/db/demo/**/*.test.ts',
+];
+
 export default defineConfig({
   plugins: [vue()],
   build: {
@@ -21,9 +28,20 @@ export default defineConfig({
         test: {
           name: 'code',
           include: ['tests/**/*.test.ts'],
+          exclude: pureTests,
           globalSetup: ['tests/support/global-setup.ts'],
           testTimeout: 90_000,
           hookTimeout: 120_000,
+          maxWorkers: 2,
+        },
+      },
+      {
+        extends: true,
+        test: {
+          name: 'engine',
+          include: pureTests,
+          testTimeout: 90_000,
+          isolate: false,
           maxWorkers: 2,
         },
       },

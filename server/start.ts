@@ -43,11 +43,15 @@ function closeServer(): Promise<void> {
   });
 }
 
+const longestStopMilliseconds = 10_000;
+
 let stopping = false;
 
 async function stop(): Promise<void> {
   if (stopping) return;
   stopping = true;
+  // What was still connecting when it was told to end may take a minute to give up.
+  setTimeout(() => process.exit(), longestStopMilliseconds).unref();
   await closeServer();
   compute.close();
   await Promise.all([queue.close(), events.close()]);

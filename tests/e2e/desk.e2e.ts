@@ -103,12 +103,19 @@ async function confirmComplete(project: HandedIn): Promise<void> {
 }
 
 test('the reviewer takes both folders and confirms both complete, and the official findings come by themselves', async () => {
+  const { page } = tobiah;
+  // The preliminary findings stand there until the official run has ended.
+  const patience = { timeout: 30_000 };
   await confirmComplete(solar);
-  const verdicts = new Set((await readFindings(tobiah.page)).map(({ verdict }) => verdict));
-  expect([...verdicts].sort()).toEqual(['Does not apply', 'Within the limit']);
+  const listVerdicts = async () =>
+    [...new Set((await readFindings(page)).map(({ verdict }) => verdict))].sort();
+  await expect.poll(listVerdicts, patience).toEqual(['Does not apply', 'Within the limit']);
   await confirmComplete(machine);
-  const outside = (await readFindings(tobiah.page)).filter(({ verdict }) => verdict === 'Outside the limit');
-  expect(new Set(outside.map(({ question }) => question)).size).toBeGreaterThan(1);
+  const countOutside = async () => {
+    const outside = (await readFindings(page)).filter(({ verdict }) => verdict === 'Outside the limit');
+    return new Set(outside.map(({ question }) => question)).size;
+  };
+  await expect.poll(countOutside, patience).toBeGreaterThan(1);
 });
 
 const reasons = {

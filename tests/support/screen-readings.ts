@@ -1,4 +1,4 @@
-import type { Locator, Page } from 'playwright-core';
+import type { Page } from 'playwright-core';
 
 export interface ShownFinding {
   question: string;
@@ -9,21 +9,22 @@ export interface ShownFinding {
   limit: string | null;
 }
 
-const textOf = async (part: Locator) => ((await part.count()) === 0 ? null : await part.innerText());
-
-/** The findings as they stand on a page, in the order of the page. */
-export async function readFindings(page: Page): Promise<ShownFinding[]> {
-  // What is folded away has no text to read.
-  await page.evaluate(() => document.querySelectorAll('details').forEach((each) => (each.open = true)));
-  const entries = await page.locator('[data-question]').all();
-  return Promise.all(
-    entries.map(async (entry) => ({
-      question: await entry.getByRole('heading').innerText(),
-      element: (await textOf(entry.locator('[data-figure="element"]'))) ?? undefined,
-      verdict: await entry.locator('header .tag').innerText(),
-      value: await textOf(entry.locator('[data-figure="value"]')),
-      limit: await textOf(entry.locator('[data-figure="limit"]')),
-    })),
+/**
+ * The findings as they stand on a page, in its order, also those that are folded away. All at one moment: a page that hears
+ * of a newer run writes them anew.
+ */
+export function readFindings(page: Page): Promise<ShownFinding[]> {
+  return page.evaluate(() =>
+    [...document.querySelectorAll('[data-question]')].map((entry) => {
+      const textOf = (selector: string) => entry.querySelector(selector)?.textContent.trim() ?? null;
+      return {
+        question: textOf('h3') ?? '',
+        element: textOf('[data-figure="element"]') ?? undefined,
+        verdict: textOf('header .tag') ?? '',
+        value: textOf('[data-figure="value"]'),
+        limit: textOf('[data-figure="limit"]'),
+      };
+    }),
   );
 }
 

@@ -7,6 +7,11 @@ import type { Counts } from './counts.ts';
 const vitest = 'node_modules/vitest/vitest.mjs';
 const longestStageSeconds = 480;
 
+function listArguments(project: string): string[] {
+  const reporters = ['--reporter=default', '--reporter=./tests/support/plain-line-reporter.ts'];
+  return [vitest, 'run', '--project', project, ...reporters];
+}
+
 /** The stages of one test run; `stop` ends those that are under way. */
 export class Stages {
   private readonly running = new Set<RunningProcess>();
@@ -33,17 +38,26 @@ export class Stages {
 
   project(name: string): Promise<Counts> {
     console.log(`\n${name} tests`);
-    const reporters = ['--reporter=default', '--reporter=./tests/support/plain-line-reporter.ts'];
-    return this.counted(name, [vitest, 'run', '--project', name, ...reporters]);
+    return this.counted(name, listArguments(name));
+  }
+
+  /** Runs beside another stage: what it says is shown in one piece when it has ended. */
+  async projectBeside(name: string): Promise<Counts> {
+    const logFile = join(this.directory, `${name}.log`);
+    const counts = await this.counted(name, listArguments(name), logFile);
+    console.log(`\n${name} tests`);
+    if (existsSync(logFile)) console.log(readFileSync(logFile, 'utf8'));
+    return counts;
   }
 
   /**
    * A program that leaves its counts in FEEDERWRIGHT_COUNTS_FILE. Whatever way it ends without counts that are
    * green, at least one failure is reported.
    */
-  async counted(name: string, args: string[]): Promise<Counts> {
+  async counted(name: string, args: string[], logFile?: string): Promise<Counts> {
     const countsFile = join(this.directory, `${name}.json`);
-    const exit = await this.runToEnd(name, args, { ...this.env, FEEDERWRIGHT_COUNTS_FILE: countsFile });
+    const env = { ...this.env, FEEDERWRIGHT_COUNTS_FILE: countsFile };
+    const exit = await this.runToEnd(name, args, env, logFile);
     const counts = existsSync(countsFile)
       ? (JSON.parse(readFileSync(countsFile, 'utf8')) as Counts)
       : { passed: 0, failed: 0, skipped: 0 };
