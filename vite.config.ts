@@ -30,7 +30,7 @@ export default defineConfig({
           include: ['tests/**/*.test.ts'],
           exclude: pureTests,
           globalSetup: ['tests/support/global-setup.ts'],
-          testTimeout: 90_000,
+          testTimeout: 150_000,
           hookTimeout: 120_000,
           maxWorkers: 2,
         },

@@ -2,6 +2,8 @@ import { AxeBuilder } from '@axe-core/playwright';
 import type { Browser, Page } from 'playwright-core';
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import type { Worklist } from '../../shared/schemas/applications.ts';
+import { demoPlaces } from '../../db/seeds/demo/feeders.ts';
+import { typePin } from '../support/handing-in.ts';
 import { launchBrowser } from '../support/browser.ts';
 import { listForeign, openSignedIn, openVisit, type Visit } from '../support/visits.ts';
 
@@ -29,6 +31,13 @@ const unfold = async (page: Page) => {
 };
 const openFirstMessage = (page: Page) =>
   page.getByRole('navigation', { name: 'Messages, newest first' }).getByRole('link').first().click();
+
+/** Leads from the form to the report itself. */
+const askForReport = async (page: Page) => {
+  await typePin(page, demoPlaces.solarSite);
+  await press('Ask for the report')(page);
+  await page.getByRole('heading', { level: 1, name: 'Pre-application report' }).waitFor();
+};
 
 async function findApplication({ context }: Visit, query: string): Promise<string> {
   const answer = await context.request.get(`/api/applications?page=1&pageSize=1&${query}`);
@@ -105,6 +114,7 @@ const stops: Record<string, (visit: Visit) => Promise<Stop[]>> = {
       { path: `/projects/${incomplete}/form` },
       { path: '/reports' },
       { path: '/reports/new', act: press('Ask for the report') },
+      { path: '/reports/new', act: askForReport },
       { path: '/mailbox' },
       { path: '/mailbox', act: openFirstMessage },
       { path: '/desk' },

@@ -55,10 +55,10 @@ function startDesk(...more: string[]): RunningProcess {
 }
 
 async function waitFor(what: string, isSo: () => boolean | Promise<boolean>): Promise<void> {
-  const end = Date.now() + 20_000;
+  const end = Date.now() + 75_000;
   while (!(await isSo())) {
     if (Date.now() > end)
-      throw new Error(`Waited 20 s in vain: ${what}\n${readFileSync(join(dir, 'desk.log'))}`);
+      throw new Error(`Waited 75 s in vain: ${what}\n${readFileSync(join(dir, 'desk.log'))}`);
     await sleep(30);
   }
 }
