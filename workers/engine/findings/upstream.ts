@@ -23,6 +23,11 @@ export type Upstream = {
 
 /** Finds the way from a node to the nearest source; the path is the node alone where there is none. */
 export function traceUpstream(model: Model, choice: CaseChoice, node: number): Upstream {
+  return traceWays(model, choice)(node);
+}
+
+/** Makes a finder of every node's way to its source, as `traceUpstream` gives it, after one walk through the network. */
+export function traceWays(model: Model, choice: CaseChoice): (node: number) => Upstream {
   const links = model.switches
     .filter((link) => isClosed(choice, link) && isInService(model, choice, link))
     .map((link): [number, number] => [link.from, link.to]);
@@ -47,13 +52,16 @@ export function traceUpstream(model: Model, choice: CaseChoice, node: number): U
       queue.push(v);
     }
   }
-  const path = [node];
-  const branches: number[] = [];
-  for (let v = node; cameFrom[v] !== -1; v = cameFrom[v]!) {
-    path.push(cameFrom[v]!);
-    if (branchOfEdge[cameBy[v]!] !== -1) branches.push(branchOfEdge[cameBy[v]!]!);
-  }
-  return { graph, path, branches, branchOfEdge, isSource };
+  return (node) => {
+    const path = [node];
+    const branches: number[] = [];
+    for (let v = node; cameFrom[v] !== -1; v = cameFrom[v]!) {
+      path.push(cameFrom[v]!);
+      const branch = branchOfEdge[cameBy[v]!]!;
+      if (branch !== -1) branches.push(branch);
+    }
+    return { graph, path, branches, branchOfEdge, isSource };
+  };
 }
 
 /** Marks the nodes that stay with `node` when a branch is opened; nothing where a source stays with it too. */

@@ -25,7 +25,7 @@ import { makeRoomNetwork } from './seen-places.ts';
 import type { Test } from './sizes.ts';
 import { measureRule, mostKva, shrink } from './sizes.ts';
 import { boundVoltageChange } from './voltage-change.ts';
-import { traceWays } from './ways-to-source.ts';
+import { traceWays } from '../findings/upstream.ts';
 
 /*
  * Room: for every three-phase node above 1 kV the largest plant of inverters and the largest machine that pass all questions whose
